@@ -13,9 +13,7 @@ export const workDateSchema = z.iso.date();
 export const stampSchema = z
   .object({ at: z.iso.datetime({ offset: true }), received: z.iso.datetime({ offset: true }), by: z.string() })
   .strict();
-export const blockStampSchema = z
-  .object({ first: stampSchema, last: stampSchema, digest: z.string() })
-  .strict();
+export const blockStampSchema = z.object({ first: stampSchema, last: stampSchema, digest: z.string() }).strict();
 export type BlockStamp = z.infer<typeof blockStampSchema>;
 export type BlockStamps = Record<string, BlockStamp>;
 
@@ -59,7 +57,14 @@ export type TraceDto = {
   problem: string | null;
   rows: number;
   /** As found in the file; symbol is a proposal for the node's settings. */
-  columns: { name: string; symbol: string; unit: string | null; missing: number; min: number | null; max: number | null }[];
+  columns: {
+    name: string;
+    symbol: string;
+    unit: string | null;
+    missing: number;
+    min: number | null;
+    max: number | null;
+  }[];
   comments: string[];
   uploadedBy: PersonDto;
   receivedAt: string;
@@ -109,7 +114,15 @@ export type EntryDto = {
   questions: QuestionDto[];
   signatures: SignatureDto[];
   traces: TraceDto[];
-  may: { write: boolean; ask: boolean; answer: boolean; sign: boolean; countersign: boolean; strikeOut: boolean; invite: boolean };
+  may: {
+    write: boolean;
+    ask: boolean;
+    answer: boolean;
+    sign: boolean;
+    countersign: boolean;
+    strikeOut: boolean;
+    invite: boolean;
+  };
   /** Why countersigning is refused now, as a sentence; null when it may go on or does not concern this reader. */
   countersignObstacle: string | null;
   /** How many of the version's traces this reader has been served. */
