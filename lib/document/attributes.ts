@@ -15,9 +15,7 @@ export const symbolSchema = z.string().regex(/^[A-Za-zΑ-Ωα-ωµ][A-Za-z0-9_Α
 export const handleSchema = z.string().regex(/^[A-Za-z][A-Za-z0-9_]{0,31}$/);
 
 /** A quantity as its author typed it (`1e9 V/A ± 50 ppm`), with where it was taken from. */
-export const statedQuantitySchema = z
-  .object({ text: z.string().max(200), source: z.string().max(300) })
-  .strict();
+export const statedQuantitySchema = z.object({ text: z.string().max(200), source: z.string().max(300) }).strict();
 
 /**
  * One column of the file. `unit` null means that neither the file nor the author has stated it yet: it is asked for,
@@ -46,12 +44,8 @@ export const traceSettingsSchema = z
     sign: z.enum(['as recorded', 'reversed']).nullable(),
     signConvention: note,
     /** Quantities as typed; each may be empty. load + wait + eject ≤ 1/frequency is checked. */
-    drive: z
-      .object({ frequency: note, waveform: note, amplitude: note, load: note, wait: note, eject: note })
-      .strict(),
-    instrument: z
-      .object({ name: note, range: note, bandwidth: note, integrationTime: note, overload: note })
-      .strict(),
+    drive: z.object({ frequency: note, waveform: note, amplitude: note, load: note, wait: note, eject: note }).strict(),
+    instrument: z.object({ name: note, range: note, bandwidth: note, integrationTime: note, overload: note }).strict(),
     sweepDirection: z.enum(['up', 'down', 'both']).nullable(),
   })
   .strict();
@@ -61,7 +55,10 @@ export const spanSchema = z
   .object({
     name: symbolSchema,
     axis: symbolSchema,
-    intervals: z.array(z.tuple([z.number(), z.number()])).min(1).max(200),
+    intervals: z
+      .array(z.tuple([z.number(), z.number()]))
+      .min(1)
+      .max(200),
   })
   .strict();
 

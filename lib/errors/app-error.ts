@@ -47,7 +47,9 @@ export class AppError extends Error {
 }
 
 /** The body of every refused request. */
-export type ErrorBody = { error: { code: ErrorCode; message: string; field?: string; details?: Record<string, unknown> } };
+export type ErrorBody = {
+  error: { code: ErrorCode; message: string; field?: string; details?: Record<string, unknown> };
+};
 
 export function errorBody(error: AppError): ErrorBody {
   return {
