@@ -1,0 +1,56 @@
+import type { Distribution } from '@/lib/expression/contract';
+import type { Dimension } from '@/lib/units/dimension';
+import type { Unit } from '@/lib/units/parse';
+
+/** Rows of a trace as half-open ranges [start, end), ascending and apart. */
+export type RowRanges = readonly (readonly [number, number])[];
+
+/** What a statistic was taken from: kept so that two of them over common rows know their correlation. */
+export type Sample = {
+  traceId: string;
+  statistic: 'mean' | 'other';
+  /** One per row of the trace, NaN where missing. */
+  values: Float64Array;
+  rows: RowRanges;
+  /** Equal for equal rows of one trace: their means share degrees of freedom. */
+  group: string;
+  /** Samples used, and samples per block at the plateau of the block averaging. */
+  count: number;
+  blockLength: number;
+};
+
+/** A quantity that nothing else on the page explains: what uncertainty enters through. */
+export type Input = {
+  /** Equal ids are the same input, however often it is used. */
+  id: string;
+  label: string;
+  type: 'A' | 'B' | 'exact';
+  /** In coherent SI units. */
+  estimate: number;
+  u: number;
+  dimension: Dimension;
+  unit: Unit | null;
+  scale: Unit['scale'];
+  distribution: Distribution;
+  /** null: infinitely many. */
+  dof: number | null;
+  note: string | null;
+  sample: Sample | null;
+};
+
+export function exactInput(id: string, label: string, estimate: number, unit: Unit, note: string | null): Input {
+  return {
+    id,
+    label,
+    type: 'exact',
+    estimate,
+    u: 0,
+    dimension: unit.dimension,
+    unit,
+    scale: unit.scale,
+    distribution: 'normal',
+    dof: null,
+    note,
+    sample: null,
+  };
+}
