@@ -113,7 +113,8 @@ function readUnit(text: string, at: number, spaced: boolean, loose: boolean): Re
   const ambiguous: string[] = [];
   let end = at;
   let start = at;
-  if (spaced && /^1\/[A-Za-zΩµμ(√]/.test(text.slice(at, at + 3))) {
+  const inverse = spaced && /^1\/[A-Za-zΩµμ(√]/.test(text.slice(at, at + 3));
+  if (inverse) {
     end = at + 1;
   } else {
     const first = unitFactorEnd(text, at);
@@ -141,7 +142,7 @@ function readUnit(text: string, at: number, spaced: boolean, loose: boolean): Re
     if (slash) {
       divided = true;
       const name = /^[A-Za-z]+/.exec(text.slice(next))?.[0];
-      if (name) ambiguous.push(name);
+      if (name && !inverse) ambiguous.push(name);
     }
     end = nextEnd;
   }

@@ -116,3 +116,10 @@ export function inUnit(value: number, unit: Unit): number {
   const inverse = 1 / unit.factor;
   return powerOfTen(Math.round(Math.log10(inverse))) === inverse ? value * inverse : value / unit.factor;
 }
+
+/** A number in `unit`, in coherent SI units, with the same care. */
+export function fromUnit(value: number, unit: Unit): number {
+  if (unit.factor >= 1 || unit.factor === 0) return value * unit.factor;
+  const inverse = 1 / unit.factor;
+  return powerOfTen(Math.round(Math.log10(inverse))) === inverse ? value / inverse : value * unit.factor;
+}

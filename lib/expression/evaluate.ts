@@ -1,0 +1,320 @@
+import { asRefusal, Refusal } from '@/lib/errors/refusal';
+import { Correlations } from '@/lib/quantity/correlation';
+import type { Quantity } from '@/lib/quantity/quantity';
+import { calculate } from './calculate';
+import { Pending, type Context } from './context';
+import type { CellSource, DerivedColumn, Sheet, SheetInput, TraceSource, ValueResult } from './contract';
+import { engineVersion } from './engine';
+import { order } from './graph';
+import { parseLine, type Line } from './parse';
+import { columnResult, failed, pendingResult, scalarResult } from './result';
+import { StatisticsCache } from './statistics';
+import { TraceStore, type StoredTraces } from './trace-store';
+
+/** What became of a line; kept from sheet to sheet while nothing that it read has changed. */
+type Outcome = {
+  cell: CellSource;
+  quantity: Quantity | null;
+  result: ValueResult;
+  derived: DerivedColumn | null;
+  /** What was asked while calculating, and the answer: equal answers give an equal outcome. */
+  reads: readonly Read[];
+};
+
+type Read = { kind: 'symbol' | 'column' | 'span' | 'defined'; name: string; answer: unknown };
+
+type Parsed = { line: Line | null; refusal: Refusal | null };
+
+type Memory = {
+  parsed: Map<string, Parsed>;
+  outcomes: Map<string, Outcome>;
+  traces: StoredTraces;
+  correlations: Correlations;
+  statistics: StatisticsCache;
+};
+
+// Beside the sheets rather than in them: a sheet stays plain data.
+const memories = new WeakMap<Sheet, Memory>();
+
+/** Most lines of one entry. */
+export const mostCells = 5000;
+
+/**
+ * Calculates all lines of an entry, each after what it reads. Errors are results, never exceptions. With `previous`,
+ * the sheet made of an earlier state of the same entry, lines are taken over whose text and inputs are unchanged, and
+ * statistics whose samples are.
+ */
+export function evaluateSheet(input: SheetInput, previous?: Sheet): Sheet {
+  const memory = previous ? memories.get(previous) : undefined;
+  return new Evaluation(input, memory).run();
+}
+
+function parseCell(source: string): Parsed {
+  try {
+    return { line: parseLine(source), refusal: null };
+  } catch (error) {
+    return { line: null, refusal: asRefusal(error) };
+  }
+}
+
+class Evaluation {
+  private readonly parsed = new Map<string, Parsed>();
+  private readonly outcomes = new Map<string, Outcome>();
+  /** Lines by symbol, for those that are defined once. */
+  private readonly bySymbol = new Map<string, number>();
+  private readonly lines: Parsed[] = [];
+  private readonly byNumber: (Outcome | undefined)[] = [];
+  private readonly store: TraceStore;
+  private readonly correlations: Correlations;
+  private readonly statistics: StatisticsCache;
+
+  constructor(
+    private readonly input: SheetInput,
+    private readonly memory: Memory | undefined,
+  ) {
+    this.correlations = memory?.correlations ?? new Correlations();
+    this.statistics = memory?.statistics ?? new StatisticsCache();
+    this.store = new TraceStore(input.traces, memory?.traces, {
+      correlations: this.correlations,
+      statistics: this.statistics,
+    });
+  }
+
+  run(): Sheet {
+    const { cells } = this.input;
+    for (const cell of cells) this.lines.push(this.parse(cell.source));
+    const refusals = this.define();
+    const { sequence, circles } = order(this.lines.map(({ line }) => (line ? this.reading(line) : [])));
+    for (const circle of circles) {
+      const names = circle.map((number) => `\`${this.lines[number]?.line?.symbol ?? ''}\``);
+      const message =
+        names.length === 1
+          ? `${names[0] ?? ''} is calculated from itself: write it without its own symbol.`
+          : `${names.slice(0, -1).join(', ')} and ${names.at(-1) ?? ''} are calculated from one another in a circle: one of them has to be written without the others.`;
+      for (const number of circle) refusals.set(number, new Refusal('circle', message));
+    }
+    for (const number of sequence) this.byNumber[number] = this.outcome(number, refusals.get(number) ?? null);
+    return this.sheet();
+  }
+
+  private sheet(): Sheet {
+    const results = new Map<string, ValueResult>();
+    const columns = new Map<string, DerivedColumn>();
+    this.input.cells.forEach((cell, number) => {
+      const outcome = this.byNumber[number];
+      if (!outcome) return;
+      results.set(cell.id, outcome.result);
+      this.outcomes.set(cell.id, outcome);
+      if (outcome.derived) columns.set(outcome.derived.symbol, outcome.derived);
+    });
+    const sheet: Sheet = { engine: engineVersion, results, columns };
+    const { parsed, outcomes, correlations, statistics } = this;
+    memories.set(sheet, { parsed, outcomes, traces: this.store.stored, correlations, statistics });
+    return sheet;
+  }
+
+  private parse(source: string): Parsed {
+    const parsed = this.parsed.get(source) ?? this.memory?.parsed.get(source) ?? parseCell(source);
+    this.parsed.set(source, parsed);
+    return parsed;
+  }
+
+  /** Symbols to lines; a symbol that two lines define is an error of both, for which of them holds is not known. */
+  private define(): Map<number, Refusal> {
+    const refusals = new Map<number, Refusal>();
+    if (this.lines.length > mostCells) {
+      for (let number = mostCells; number < this.lines.length; number++) {
+        refusals.set(number, new Refusal('too-large', `An entry calculates at most ${mostCells} values.`));
+      }
+    }
+    const definitions = new Map<string, number[]>();
+    this.lines.forEach(({ line }, number) => {
+      if (line) definitions.set(line.symbol, [...(definitions.get(line.symbol) ?? []), number]);
+    });
+    for (const [symbol, numbers] of definitions) {
+      for (const number of numbers) {
+        if (numbers.length > 1) {
+          refusals.set(
+            number,
+            new Refusal(
+              'defined-twice',
+              `\`${symbol}\` is given a value in ${numbers.length} lines: keep one of them, or choose another symbol.`,
+            ),
+          );
+        } else if (this.lines[number]?.line?.column && this.store.fileColumn(symbol)) {
+          refusals.set(
+            number,
+            new Refusal(
+              'defined-twice',
+              `\`${symbol}\` is a column of the file: choose another name for the one that is calculated.`,
+            ),
+          );
+          continue;
+        }
+        this.bySymbol.set(symbol, number);
+      }
+    }
+    return refusals;
+  }
+
+  private reading(line: Line): number[] {
+    const numbers: number[] = [];
+    for (const { kind, name } of line.names) {
+      const number = kind === 'span' ? undefined : this.bySymbol.get(name);
+      if (number !== undefined) numbers.push(number);
+    }
+    return numbers;
+  }
+
+  private outcome(number: number, refusal: Refusal | null): Outcome {
+    const cell = this.input.cells[number] as CellSource;
+    const { line, refusal: unread } = this.lines[number] as Parsed;
+    const stop = refusal ?? unread;
+    const before = this.memory?.outcomes.get(cell.id);
+    if (stop || !line) {
+      const result = failed(cell, line, stop ?? new Refusal('syntax', 'This line cannot be read.'));
+      const same =
+        before && before.cell.source === cell.source && before.result.error?.message === result.error?.message;
+      return same ? before : { cell, quantity: null, result, derived: null, reads: [] };
+    }
+    if (before && this.unchanged(before, cell)) return before;
+    return this.calculated(cell, line);
+  }
+
+  private unchanged(before: Outcome, cell: CellSource): boolean {
+    if (before.cell.source !== cell.source || before.cell.unit !== cell.unit || before.cell.digits !== cell.digits)
+      return false;
+    if (before.quantity === null && before.reads.length === 0) return false;
+    return before.reads.every(({ kind, name, answer }) => this.answer(kind, name) === answer);
+  }
+
+  /** The present answer to a question, comparable by identity with an earlier one. */
+  private answer(kind: Read['kind'], name: string): unknown {
+    switch (kind) {
+      case 'symbol':
+        return this.outcomeOf(name);
+      case 'defined':
+        return this.bySymbol.has(name);
+      case 'column':
+        return this.outcomeOf(name) ?? this.store.column(name);
+      case 'span':
+        return this.store.span(name);
+    }
+  }
+
+  private outcomeOf(symbol: string): Outcome | undefined {
+    const number = this.bySymbol.get(symbol);
+    return number === undefined ? undefined : this.byNumber[number];
+  }
+
+  private calculated(cell: CellSource, line: Line): Outcome {
+    const reads: Read[] = [];
+    const warnings: string[] = [];
+    const done = (quantity: Quantity | null, result: ValueResult, derived: DerivedColumn | null = null): Outcome => ({
+      cell: { ...cell },
+      quantity,
+      result,
+      derived,
+      reads,
+    });
+    try {
+      const quantity = this.placed(line, calculate(line.tree, this.context(cell, line, reads, warnings)));
+      if (quantity.kind === 'scalar') {
+        return done(quantity, scalarResult(cell, line, quantity, this.correlations, warnings));
+      }
+      const { result, derived } = columnResult(cell, line, quantity, warnings);
+      return done(quantity, result, derived);
+    } catch (error) {
+      if (error instanceof Pending) return done(null, pendingResult(cell, line));
+      return done(null, failed(cell, line, asRefusal(error)));
+    }
+  }
+
+  /** A column belongs left of = as `t1.P`, a single value as a symbol. */
+  private placed(line: Line, quantity: Quantity): Quantity {
+    const { column, symbol } = line;
+    if (quantity.kind === 'scalar') {
+      if (!column) return quantity;
+      throw new Refusal(
+        'not-allowed',
+        `\`${symbol}\` names a column of ${column.handle}, but a single value stands right of =: write ${column.name} = … instead.`,
+      );
+    }
+    if (!column) {
+      throw new Refusal(
+        'not-allowed',
+        `A column stands right of =: write ${quantity.handle}.${symbol} = …, or take its mean.`,
+      );
+    }
+    if (column.handle !== quantity.handle) {
+      throw new Refusal(
+        'not-allowed',
+        `What stands right of = is a column of ${quantity.handle}: write ${quantity.handle}.${column.name} = ….`,
+      );
+    }
+    return { ...quantity, key: symbol, label: symbol };
+  }
+
+  private context(cell: CellSource, line: Line, reads: Read[], warnings: string[]): Context {
+    const ask = (kind: Read['kind'], name: string): unknown => {
+      const answer = this.answer(kind, name);
+      reads.push({ kind, name, answer });
+      return answer;
+    };
+    const quantityOf = (name: string, outcome: Outcome): Quantity => {
+      if (outcome.quantity) return outcome.quantity;
+      if (outcome.result.state === 'pending') throw new Pending(name);
+      const code = outcome.result.error?.code ?? 'unknown-name';
+      throw new Refusal(code, `\`${name}\` could not be calculated, and ${line.symbol} needs it.`);
+    };
+    return {
+      id: cell.id,
+      symbol: line.symbol,
+      correlations: this.correlations,
+      statistics: this.statistics,
+      warn: (sentence) => warnings.push(sentence),
+      isSymbol: (name) => ask('defined', name) === true,
+      symbolValue: (name) => {
+        const outcome = ask('symbol', name) as Outcome | undefined;
+        if (!outcome) throw this.unknown(name);
+        return quantityOf(name, outcome);
+      },
+      column: (handle, column) => {
+        const name = `${handle}.${column}`;
+        ask('column', name);
+        const outcome = this.outcomeOf(name);
+        const quantity = outcome ? quantityOf(name, outcome) : this.store.columnValue(handle, column);
+        if (quantity.kind !== 'column') throw new Refusal('not-allowed', `\`${name}\` is not a column.`);
+        return quantity;
+      },
+      span: (handle, name) => {
+        ask('span', `${handle}.${name}`);
+        return this.store.spanRows(handle, name);
+      },
+    };
+  }
+
+  /** Says what a name that nothing defines might have been. */
+  private unknown(name: string): Refusal {
+    const trace = this.input.traces.find(({ handle }) => handle === name);
+    if (trace) {
+      const column = trace.settings.columns[1]?.symbol ?? trace.settings.columns[0]?.symbol ?? 'I';
+      return new Refusal('unknown-name', `\`${name}\` is a trace: name one of its columns, as in ${name}.${column}.`);
+    }
+    const spanned = this.input.traces.find(({ spans }) => spans.some((span) => span.name === name));
+    if (spanned) {
+      return new Refusal(
+        'unknown-name',
+        `\`${name}\` is a span of ${spanned.handle}: it stands in mean, sd, median, count, slope and integral, as in mean(${spanned.handle}.I, ${name}).`,
+      );
+    }
+    const near = [...this.bySymbol.keys()].filter((symbol) => symbol.toLowerCase() === name.toLowerCase());
+    const hint = near.length > 0 ? ` Did you mean ${near.join(', ')}?` : ' Give it a value in a line of its own.';
+    return new Refusal(
+      'unknown-name',
+      `\`${name}\` is not known in this entry.${hint} Units stand only right after a number.`,
+    );
+  }
+}
+
+export type { TraceSource };

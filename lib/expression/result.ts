@@ -1,0 +1,139 @@
+import { Refusal } from '@/lib/errors/refusal';
+import { combine, coverage } from '@/lib/quantity/combine';
+import type { Correlations } from '@/lib/quantity/correlation';
+import { show, writeText, type Shown } from '@/lib/quantity/format';
+import type { Column, Scalar } from '@/lib/quantity/quantity';
+import { inUnit, readableUnit } from '@/lib/units/choose';
+import { sameDimension } from '@/lib/units/dimension';
+import { parseUnit, type Unit } from '@/lib/units/parse';
+import { celsiusZero } from '@/lib/units/table';
+import { levelOfWatts } from '@/lib/quantity/format';
+import { budgetOf } from './budget';
+import type { BudgetLine, CellError, CellSource, DerivedColumn, ValueResult } from './contract';
+import { unitName } from './operations';
+import type { Line } from './parse';
+import { expressionTex, resultMathml, symbolTex, wordsMathml } from './typeset';
+
+/** A result with nothing in it but what the line itself says. */
+function blank(cell: CellSource, line: Line | null, state: ValueResult['state']): ValueResult {
+  return {
+    id: cell.id,
+    symbol: line?.symbol ?? null,
+    state,
+    text: null,
+    symbolTex: line ? symbolTex(line.symbol) : null,
+    expressionTex: line ? expressionTex(line.tree) : null,
+    mathml: null,
+    value: null,
+    unit: null,
+    u: null,
+    dof: null,
+    k: null,
+    expanded: null,
+    coverage,
+    budget: [],
+    dependsOn: line ? line.names.map(({ name }) => name) : [],
+    warnings: [],
+    error: null,
+  };
+}
+
+export function failed(cell: CellSource, line: Line | null, refusal: Refusal): ValueResult {
+  const error: CellError = { code: refusal.code, message: refusal.message };
+  return { ...blank(cell, line, 'error'), error };
+}
+
+export function pendingResult(cell: CellSource, line: Line): ValueResult {
+  return blank(cell, line, 'pending');
+}
+
+/** The unit that the author fixed, or that `convert` at the head of the line names; null for the usual choice. */
+function wishedUnit(cell: CellSource, line: Line, value: Scalar | Column): Unit | null {
+  if (cell.unit === null || cell.unit.trim() === '') {
+    return line.tree.kind === 'call' && line.tree.name === 'convert' ? line.tree.unit : null;
+  }
+  const unit = parseUnit(cell.unit.trim());
+  if (!sameDimension(unit.dimension, value.dimension) || (unit.scale !== 'linear' && unit.scale !== value.scale)) {
+    throw new Refusal('unit-clash', `${line.symbol} is in ${unitName(value)} and cannot be shown in ${unit.text}.`);
+  }
+  if (value.scale === 'level' && unit.scale === 'linear') return unit;
+  if (value.scale === 'celsius' && unit.scale === 'linear') return unit;
+  return unit;
+}
+
+export function scalarResult(
+  cell: CellSource,
+  line: Line,
+  scalar: Scalar,
+  correlations: Correlations,
+  warnings: readonly string[],
+): ValueResult {
+  const combined = combine(scalar, correlations);
+  const shown = show(scalar, combined.u, { unit: wishedUnit(cell, line, scalar), significant: cell.digits });
+  const text = writeText(shown);
+  const result: ValueResult = {
+    ...blank(cell, line, 'ok'),
+    text,
+    mathml: resultMathml(line.symbol, shown),
+    value: shown.value,
+    unit: shown.unit.text,
+    u: shown.u,
+    dof: combined.dof,
+    k: combined.k,
+    expanded: combined.k === null ? null : combined.k * shown.u,
+    warnings: [...new Set([...warnings, ...combined.warnings])],
+  };
+  return withBudget(result, scalar, shown);
+}
+
+/**
+ * Budgets are read one at a time, and written for 200 values at every keystroke they would cost more than all else:
+ * they are made when first asked for. The property is the object's own and enumerable, so copies and JSON hold it.
+ */
+function withBudget(result: ValueResult, scalar: Scalar, shown: Shown): ValueResult {
+  let budget: BudgetLine[] | null = null;
+  return Object.defineProperty(result, 'budget', {
+    enumerable: true,
+    configurable: true,
+    get: () => (budget ??= budgetOf(scalar, shown)),
+  });
+}
+
+export function columnResult(
+  cell: CellSource,
+  line: Line,
+  column: Column,
+  warnings: readonly string[],
+): { result: ValueResult; derived: DerivedColumn } {
+  const unit = wishedUnit(cell, line, column) ?? columnUnit(column);
+  const words = `column, ${column.values.length} ${column.values.length === 1 ? 'row' : 'rows'}`;
+  const values = new Float64Array(column.values.length);
+  for (let row = 0; row < values.length; row++) {
+    const value = column.values[row] as number;
+    values[row] =
+      unit.scale === 'celsius'
+        ? value - celsiusZero
+        : unit.scale === 'level'
+          ? levelOfWatts(value)
+          : inUnit(value, unit);
+  }
+  const result: ValueResult = {
+    ...blank(cell, line, 'ok'),
+    text: words,
+    mathml: wordsMathml(line.symbol, words),
+    unit: unit.text,
+    warnings: [...new Set(warnings)],
+  };
+  return { result, derived: { symbol: line.symbol, handle: column.handle, unit: unit.text, values } };
+}
+
+/** The unit in which the largest sample reads best. */
+function columnUnit(column: Column): Unit {
+  if (column.scale !== 'linear' && column.hint) return column.hint;
+  let largest = 0;
+  for (let row = 0; row < column.values.length; row++) {
+    const size = Math.abs(column.values[row] as number);
+    if (size > largest) largest = size;
+  }
+  return readableUnit(column.dimension, largest, column.hint);
+}
