@@ -5,7 +5,7 @@ import { createTypeScriptImportResolver } from 'eslint-import-resolver-typescrip
 import tseslint from 'typescript-eslint';
 
 /** Server folders that every noun stands on. */
-const foundation = ['access', 'auth', 'diagnostics', 'digest', 'env', 'log', 'mail', 'people'];
+const foundation = ['access', 'auth', 'clock', 'diagnostics', 'digest', 'env', 'log', 'mail', 'people'];
 
 const elements = [
   { type: 'lib', pattern: 'lib/*', capture: ['subject'] },

@@ -1,4 +1,5 @@
 import 'server-only';
+import { now } from '@/server/clock/service';
 import { and, eq, isNull } from 'drizzle-orm';
 import { checkDocument } from '@/lib/document/check';
 import { documentText } from '@/lib/document/text';
@@ -50,7 +51,7 @@ export async function saveDraft(entryId: string, person: Person, save: SaveDraft
         details: { current: await toDraftDto(tx, draft) },
       });
     }
-    const received = new Date();
+    const received = now();
     const stamps = nextStamps(draft.stamps, doc.content ?? [], {
       written: save.written,
       clockOffsetMs: save.clockOffsetMs,

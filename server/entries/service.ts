@@ -1,4 +1,5 @@
 import 'server-only';
+import { now } from '@/server/clock/service';
 import { randomUUID } from 'node:crypto';
 import { and, desc, eq, inArray, sql } from 'drizzle-orm';
 import { z } from 'zod';
@@ -53,7 +54,7 @@ export async function createEntry(scope: ScopeOf<'entry.create'>, input: z.infer
       deviceIds: input.deviceIds,
       doc,
       requestKey: input.requestKey,
-      at: new Date(),
+      at: now(),
     });
   });
 }
@@ -115,7 +116,7 @@ export async function changeFacts(scope: ScopeOf<'entry.write'>, facts: z.infer<
     const row = await queries.lockEntry(tx, scope.entry.id);
     refuseFrozen(row.state);
     await checkPlaces(tx, row.notebookId, facts.cooldownId, facts.deviceIds);
-    await tx.update(entry).set({ workDate: facts.workDate, cooldownId: facts.cooldownId, changedAt: new Date() }).where(eq(entry.id, row.id));
+    await tx.update(entry).set({ workDate: facts.workDate, cooldownId: facts.cooldownId, changedAt: now() }).where(eq(entry.id, row.id));
     await tx.delete(entryDevice).where(eq(entryDevice.entryId, row.id));
     if (facts.deviceIds.length > 0) await tx.insert(entryDevice).values(facts.deviceIds.map((deviceId) => ({ entryId: row.id, deviceId })));
     // The next version binds other facts, so it must be cut even where the text has not changed.
@@ -217,8 +218,8 @@ export async function strikeOut(scope: ScopeOf<'entry.strike'>, reason: string):
   await db.transaction(async (tx) => {
     const row = await queries.lockEntry(tx, scope.entry.id);
     refuseFrozen(row.state);
-    const now = new Date();
-    await tx.update(entry).set({ state: 'struck out', struckReason: reason, struckAt: now, changedAt: now }).where(eq(entry.id, row.id));
+    const at = now();
+    await tx.update(entry).set({ state: 'struck out', struckReason: reason, struckAt: at, changedAt: at }).where(eq(entry.id, row.id));
     await appendLog(tx, { kind: 'struck out', actorId: scope.person.id, notebookId: row.notebookId, entryId: row.id, detail: { reason } });
   });
 }

@@ -1,4 +1,5 @@
 import 'server-only';
+import { now } from '@/server/clock/service';
 import { randomUUID } from 'node:crypto';
 import { eq } from 'drizzle-orm';
 import type { DocumentJson } from '@/lib/document/json';
@@ -147,7 +148,7 @@ async function buildRecord(
     author: named(row.authorId),
     contributors: contributors.map((c) => named(c.userId)),
     cutBy: named(person.id),
-    time: new Date().toISOString(),
+    time: now().toISOString(),
     reason,
     previous: previous?.digest ?? null,
   } satisfies Record<keyof VersionRecord, unknown>);
@@ -232,12 +233,12 @@ export async function restoreVersion(entryId: string, person: Person, seq: numbe
         title: old.title,
         doc: old.doc,
         stamps: old.stamps,
-        savedAt: new Date(),
+        savedAt: now(),
         savedBy: person.id,
         lastSaveId: null,
       })
       .where(eq(entryDraft.entryId, entryId));
-    await tx.update(entry).set({ title: old.title, changedAt: new Date() }).where(eq(entry.id, entryId));
+    await tx.update(entry).set({ title: old.title, changedAt: now() }).where(eq(entry.id, entryId));
     return basedOn + 1;
   });
   return cutVersion(entryId, person, revision, `Restored from version ${seq}`);

@@ -1,4 +1,5 @@
 import 'server-only';
+import { now } from '@/server/clock/service';
 import { sql } from 'drizzle-orm';
 import type { Tx } from '@/server/db/client';
 import { logRecord } from '@/server/db/schema/housekeeping';
@@ -43,7 +44,7 @@ export async function appendLog(
     .from(logRecord);
   await tx.insert(logRecord).values({
     seq: Number(next),
-    at: new Date(),
+    at: now(),
     kind: record.kind,
     actorId: record.actorId,
     notebookId: record.notebookId ?? null,

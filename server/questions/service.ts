@@ -1,4 +1,5 @@
 import 'server-only';
+import { now } from '@/server/clock/service';
 import { randomUUID } from 'node:crypto';
 import { asc, eq, inArray } from 'drizzle-orm';
 import { z } from 'zod';
@@ -88,7 +89,7 @@ export async function ask(scope: ScopeOf<'entry.ask'>, input: z.infer<typeof ask
       quote: input.quote,
       text: input.text,
       askedBy: person.id,
-      askedAt: new Date(),
+      askedAt: now(),
       requestKey: input.requestKey ?? null,
     });
     await appendLog(tx, { kind: 'question', actorId: person.id, notebookId: about.notebookId, entryId: about.id, detail: { question: made } });
@@ -115,7 +116,7 @@ export async function answerQuestion(scope: ScopeOf<'question.answer'>, text: st
     if (row.askedBy === person.id && about.authorId !== person.id) {
       throw new AppError('not_allowed', 'Somebody else answers your question.');
     }
-    await tx.insert(answer).values({ id: randomUUID(), questionId: row.id, text, answeredBy: person.id, answeredAt: new Date() });
+    await tx.insert(answer).values({ id: randomUUID(), questionId: row.id, text, answeredBy: person.id, answeredAt: now() });
     await tx.update(question).set({ state: 'answered' }).where(eq(question.id, row.id));
     await appendLog(tx, { kind: 'answer', actorId: person.id, notebookId: about.notebookId, entryId: about.id, detail: { question: row.id } });
     const to = (await addressesOf(tx, [row.askedBy])).get(row.askedBy);

@@ -1,4 +1,5 @@
 import 'server-only';
+import { now } from '@/server/clock/service';
 import { randomUUID } from 'node:crypto';
 import { and, asc, eq, inArray, isNull } from 'drizzle-orm';
 import { readRecord } from '@/lib/document/version';
@@ -44,7 +45,7 @@ export async function readBinding(scope: Signable, purpose: Purpose): Promise<Bi
   const record = readRecord(version.canonical);
   const [draft] = await db.select({ revision: entryDraft.revision, cutRevision: entryDraft.cutRevision }).from(entryDraft).where(eq(entryDraft.entryId, about.id));
   const attached = await db.select({ id: trace.id, fileName: trace.fileName }).from(trace).where(eq(trace.entryId, about.id));
-  const days = daysSince(about.workDate, new Date(), 'UTC');
+  const days = daysSince(about.workDate, now(), 'UTC');
   return {
     title: record.title,
     notebook: record.notebook,
@@ -80,7 +81,7 @@ export async function issueChallenge(scope: Signable, purpose: Purpose, versionD
   const db = await getDb();
   const version = await headVersion(db, scope.entry.id, scope.entry.headSeq);
   if (version.digest !== versionDigest) throw newerVersion();
-  const issuedAt = new Date();
+  const issuedAt = now();
   const row = {
     id: randomUUID(),
     userId: scope.person.id,
@@ -106,23 +107,28 @@ const newerVersion = () =>
   new AppError('conflict', 'There is a newer version than the one on this page. Nothing was signed; read the newest one first.');
 
 /** Checks and uses up the challenge, inside the signing transaction. */
-async function spendChallenge(tx: Tx, person: Person, entryId: string, purpose: Purpose, input: SignInput): Promise<void> {
+async function spendChallenge(tx: Tx, person: Person, entryId: string, purpose: Purpose, input: Omit<SignInput, 'password'>): Promise<void> {
   const [row] = await tx.select().from(challenge).where(eq(challenge.id, input.challengeId)).for('update');
   const fits =
     row && row.userId === person.id && row.entryId === entryId && row.purpose === purpose && row.versionDigest === input.versionDigest;
   if (!fits) throw new AppError('invalid', 'This signing step does not belong to this page. Nothing was signed; reload the page.');
   if (row.usedAt) throw new AppError('conflict', 'This signing step was used already. Reload the page to see what was signed.');
-  if (row.expiresAt < new Date()) throw new AppError('gone', 'The page stood open for more than ten minutes. Nothing was signed; reload it and sign again.');
+  if (row.expiresAt < now()) throw new AppError('gone', 'The page stood open for more than ten minutes. Nothing was signed; reload it and sign again.');
   if (row.shownDigest !== (await shownDigest(tx, entryId, purpose, person.id))) {
     throw new AppError('conflict', 'A question or an answer came in while this page was open. Nothing was signed; reload the page and read it.');
   }
-  await tx.update(challenge).set({ usedAt: new Date() }).where(eq(challenge.id, row.id));
+  await tx.update(challenge).set({ usedAt: now() }).where(eq(challenge.id, row.id));
 }
 
 /** The author's signature on the newest version. After it the entry is frozen. */
 export async function sign(scope: ScopeOf<'entry.sign'>, input: SignInput): Promise<SignatureDto> {
+  await verifyOwnPassword(scope.person, input.password, 'sign');
+  return signVerified(scope, input);
+}
+
+/** As `sign`, for a caller that has checked the signer's secret. */
+export async function signVerified(scope: ScopeOf<'entry.sign'>, input: Omit<SignInput, 'password'>): Promise<SignatureDto> {
   const { person, notebook } = scope;
-  await verifyOwnPassword(person, input.password, 'sign');
   const db = await getDb();
   return db.transaction(async (tx) => {
     const [about] = await tx.select().from(entry).where(eq(entry.id, scope.entry.id)).for('update');
@@ -134,14 +140,14 @@ export async function sign(scope: ScopeOf<'entry.sign'>, input: SignInput): Prom
       throw new AppError('conflict', 'The draft has changed since this version was cut. Nothing was signed; cut a version of the newest text first.');
     }
     await spendChallenge(tx, person, about.id, 'sign', input);
-    const now = new Date();
-    const days = daysSince(about.workDate, now, input.zone);
+    const at = now();
+    const days = daysSince(about.workDate, at, input.zone);
     const late = days > notebook.lateAfterDays;
     if (late && !input.lateReason) {
       throw new AppError('invalid', `The work was ${days} days ago and the limit is ${notebook.lateAfterDays}. Give the reason for signing late.`, { field: 'lateReason' });
     }
-    const made = await record(tx, { about, person, notebook: notebook.code, kind: 'author', version, now, input, late: late ? { days, limit: notebook.lateAfterDays, reason: input.lateReason } : null });
-    await tx.update(entry).set({ state: 'signed', changedAt: now }).where(eq(entry.id, about.id));
+    const made = await record(tx, { about, person, notebook: notebook.code, kind: 'author', version, now: at, input, late: late ? { days, limit: notebook.lateAfterDays, reason: input.lateReason } : null });
+    await tx.update(entry).set({ state: 'signed', changedAt: at }).where(eq(entry.id, about.id));
     await askWitnesses(tx, { about, person, code: notebook.code }, input.witnessIds);
     return made;
   });
@@ -149,8 +155,13 @@ export async function sign(scope: ScopeOf<'entry.sign'>, input: SignInput): Prom
 
 /** The witness's countersignature. Refused, with the reason, where the witness rules do not hold. */
 export async function countersign(scope: ScopeOf<'entry.countersign'>, input: SignInput): Promise<SignatureDto> {
+  await verifyOwnPassword(scope.person, input.password, 'countersign');
+  return countersignVerified(scope, input);
+}
+
+/** As `countersign`, for a caller that has checked the signer's secret. */
+export async function countersignVerified(scope: ScopeOf<'entry.countersign'>, input: Omit<SignInput, 'password'>): Promise<SignatureDto> {
   const { person, notebook } = scope;
-  await verifyOwnPassword(person, input.password, 'countersign');
   const db = await getDb();
   return db.transaction(async (tx) => {
     const [about] = await tx.select().from(entry).where(eq(entry.id, scope.entry.id)).for('update');
@@ -160,10 +171,10 @@ export async function countersign(scope: ScopeOf<'entry.countersign'>, input: Si
     const obstacle = await countersignObstacle(tx, about, person.id);
     if (obstacle) throw new AppError('not_allowed', obstacle);
     await spendChallenge(tx, person, about.id, 'countersign', input);
-    const now = new Date();
-    const made = await record(tx, { about, person, notebook: notebook.code, kind: 'witness', version, now, input, late: null });
-    await tx.update(entry).set({ state: 'witnessed', changedAt: now }).where(eq(entry.id, about.id));
-    await tx.update(witnessRequest).set({ closedAt: now }).where(and(eq(witnessRequest.entryId, about.id), isNull(witnessRequest.closedAt)));
+    const at = now();
+    const made = await record(tx, { about, person, notebook: notebook.code, kind: 'witness', version, now: at, input, late: null });
+    await tx.update(entry).set({ state: 'witnessed', changedAt: at }).where(eq(entry.id, about.id));
+    await tx.update(witnessRequest).set({ closedAt: at }).where(and(eq(witnessRequest.entryId, about.id), isNull(witnessRequest.closedAt)));
     const leads = await tx.select({ id: notebookMember.userId }).from(notebookMember).where(and(eq(notebookMember.notebookId, about.notebookId), eq(notebookMember.role, 'lead')));
     const addresses = await addressesOf(tx, [about.authorId, person.id, ...leads.map((lead) => lead.id)]);
     for (const to of addresses.values()) {
@@ -188,7 +199,7 @@ type Recording = {
   kind: 'author' | 'witness';
   version: typeof entryVersion.$inferSelect;
   now: Date;
-  input: SignInput;
+  input: Omit<SignInput, 'password'>;
   late: { days: number; limit: number; reason: string | null } | null;
 };
 
@@ -321,7 +332,7 @@ export async function noteServed(personId: string, about: typeof entry.$inferSel
     .select({ digest: entryVersion.digest })
     .from(entryVersion)
     .where(and(eq(entryVersion.entryId, about.id), eq(entryVersion.seq, about.headSeq)));
-  await db.insert(traceServed).values({ versionDigest: version.digest, traceId, userId: personId, servedAt: new Date() }).onConflictDoNothing();
+  await db.insert(traceServed).values({ versionDigest: version.digest, traceId, userId: personId, servedAt: now() }).onConflictDoNothing();
 }
 
 export async function readObstacle(scope: ScopeOf<'entry.countersign'>): Promise<string | null> {

@@ -1,4 +1,5 @@
 import 'server-only';
+import { now } from '@/server/clock/service';
 import { randomUUID } from 'node:crypto';
 import { eq } from 'drizzle-orm';
 import { AppError } from '@/lib/errors/app-error';
@@ -65,7 +66,7 @@ export async function receiveFile(file: ReceivedFile): Promise<UploadOutcome> {
   const { kind, notebookId, entryId, personId, uploadId, fileName, bytes, sha256 } = file;
   const state = kind === 'picture' ? ('parsed' as const) : ('received' as const);
   const isNew = await db.transaction(async (tx) => {
-    const row = { id, notebookId, entryId, kind, fileName, mediaType, bytes, sha256, state, uploadId, uploadedBy: personId, receivedAt: new Date() };
+    const row = { id, notebookId, entryId, kind, fileName, mediaType, bytes, sha256, state, uploadId, uploadedBy: personId, receivedAt: now() };
     if (!(await queries.insertTrace(tx, row))) return false;
     await appendLog(tx, {
       kind: 'trace received',
