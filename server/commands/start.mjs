@@ -13,6 +13,7 @@ const dataDir = path.resolve(process.env.DATA_DIR || './data');
 
 checkNode();
 install();
+if (process.argv.includes('--install-only')) process.exit(0);
 const buildId = build();
 if (process.argv.includes('--build-only')) process.exit(0);
 serve();
