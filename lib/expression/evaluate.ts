@@ -174,9 +174,7 @@ class Evaluation {
     const before = this.memory?.outcomes.get(cell.id);
     if (stop || !line) {
       const result = failed(cell, line, stop ?? new Refusal('syntax', 'This line cannot be read.'));
-      const same =
-        before && before.cell.source === cell.source && before.result.error?.message === result.error?.message;
-      return same ? before : { cell, quantity: null, result, derived: null, reads: [] };
+      return { cell, quantity: null, result, derived: null, reads: [] };
     }
     if (before && this.unchanged(before, cell)) return before;
     return this.calculated(cell, line);
