@@ -12,7 +12,7 @@ import { scalarFunctions, statedFunctions } from './names';
 import { convert, extremeOfTwo, power, product, quotient, scalarFunction, sum, type Operand } from './operations';
 import type { Expression } from './parse';
 import { bareNumber, statedBy, statedLiteral } from './stated';
-import { allRows, countOf, extremeOf, meanOf, medianOf, sdOf, type Over } from './statistics';
+import { allRows, countOf, extremeOf, meanOf, medianOf, named, sdOf, type Over } from './statistics';
 import { expressionText, plainText } from './typeset';
 
 const constantValues = new Map<string, Scalar>(
@@ -156,7 +156,8 @@ class Calculation {
           );
       }
     }
-    return this.ofColumn(node);
+    const found = this.ofColumn(node);
+    return node === this.tree ? named(found, this.context.symbol) : found;
   }
 
   private only(node: Expression & { kind: 'call' }): Operand {
@@ -229,7 +230,7 @@ class Calculation {
     return value;
   }
 
-  private ofColumn(node: Expression & { kind: 'call' }): Quantity {
+  private ofColumn(node: Expression & { kind: 'call' }): Scalar {
     const { name, of } = node;
     const [first] = of;
     if (!first) throw new Refusal('syntax', `${name} needs a column, as in ${name}(t1.I, on).`);

@@ -3,13 +3,14 @@ import { Correlations } from '@/lib/quantity/correlation';
 import type { Quantity } from '@/lib/quantity/quantity';
 import { calculate } from './calculate';
 import { Pending, type Context } from './context';
-import type { CellSource, DerivedColumn, Sheet, SheetInput, TraceSource, ValueResult } from './contract';
+import type { CellSource, DerivedColumn, Sheet, SheetInput, ValueResult } from './contract';
 import { engineVersion } from './engine';
 import { order } from './graph';
 import { parseLine, type Line } from './parse';
 import { columnResult, failed, pendingResult, scalarResult } from './result';
 import { StatisticsCache } from './statistics';
 import { TraceStore, type StoredTraces } from './trace-store';
+import { unknownName } from './unknown-name';
 
 /** What became of a line; kept from sheet to sheet while nothing that it read has changed. */
 type Outcome = {
@@ -173,9 +174,7 @@ class Evaluation {
     const before = this.memory?.outcomes.get(cell.id);
     if (stop || !line) {
       const result = failed(cell, line, stop ?? new Refusal('syntax', 'This line cannot be read.'));
-      const same =
-        before && before.cell.source === cell.source && before.result.error?.message === result.error?.message;
-      return same ? before : { cell, quantity: null, result, derived: null, reads: [] };
+      return { cell, quantity: null, result, derived: null, reads: [] };
     }
     if (before && this.unchanged(before, cell)) return before;
     return this.calculated(cell, line);
@@ -184,7 +183,8 @@ class Evaluation {
   private unchanged(before: Outcome, cell: CellSource): boolean {
     if (before.cell.source !== cell.source || before.cell.unit !== cell.unit || before.cell.digits !== cell.digits)
       return false;
-    if (before.quantity === null && before.reads.length === 0) return false;
+    // What a sentence says may hang on more than was read: it names near symbols, traces and spans.
+    if (before.result.state === 'error') return false;
     return before.reads.every(({ kind, name, answer }) => this.answer(kind, name) === answer);
   }
 
@@ -276,7 +276,7 @@ class Evaluation {
       isSymbol: (name) => ask('defined', name) === true,
       symbolValue: (name) => {
         const outcome = ask('symbol', name) as Outcome | undefined;
-        if (!outcome) throw this.unknown(name);
+        if (!outcome) throw unknownName(name, this.input.traces, [...this.bySymbol.keys()]);
         return quantityOf(name, outcome);
       },
       column: (handle, column) => {
@@ -293,28 +293,4 @@ class Evaluation {
       },
     };
   }
-
-  /** Says what a name that nothing defines might have been. */
-  private unknown(name: string): Refusal {
-    const trace = this.input.traces.find(({ handle }) => handle === name);
-    if (trace) {
-      const column = trace.settings.columns[1]?.symbol ?? trace.settings.columns[0]?.symbol ?? 'I';
-      return new Refusal('unknown-name', `\`${name}\` is a trace: name one of its columns, as in ${name}.${column}.`);
-    }
-    const spanned = this.input.traces.find(({ spans }) => spans.some((span) => span.name === name));
-    if (spanned) {
-      return new Refusal(
-        'unknown-name',
-        `\`${name}\` is a span of ${spanned.handle}: it stands in mean, sd, median, count, slope and integral, as in mean(${spanned.handle}.I, ${name}).`,
-      );
-    }
-    const near = [...this.bySymbol.keys()].filter((symbol) => symbol.toLowerCase() === name.toLowerCase());
-    const hint = near.length > 0 ? ` Did you mean ${near.join(', ')}?` : ' Give it a value in a line of its own.';
-    return new Refusal(
-      'unknown-name',
-      `\`${name}\` is not known in this entry.${hint} Units stand only right after a number.`,
-    );
-  }
 }
-
-export type { TraceSource };

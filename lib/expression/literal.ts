@@ -169,6 +169,11 @@ function unitFactorEnd(text: string, at: number): number | null {
   return readExponent(text, end)?.end ?? end;
 }
 
+/** %, ppm, ppb: behind ± they are of the value. */
+function isShare(unit: Unit): boolean {
+  return isDimensionless(unit.dimension) && /^(?:%|pp[mb])$/.test(unit.text);
+}
+
 function spread(
   value: ReadNumber,
   unit: Unit | null,
@@ -182,7 +187,7 @@ function spread(
     }
     return { u: by.number, unit };
   }
-  const relative = isDimensionless(byUnit.dimension) && byUnit.text !== '';
+  const relative = isShare(byUnit);
   if (unit === null) {
     if (relative) {
       throw new Refusal(
@@ -192,7 +197,7 @@ function spread(
     }
     return { u: by.number, unit: byUnit };
   }
-  if (relative && !isDimensionless(unit.dimension)) {
+  if (relative && !isShare(unit)) {
     if (unit.scale !== 'linear') {
       throw new Refusal(
         'unit-clash',

@@ -116,7 +116,9 @@ class Scanner {
     superscriptPattern.lastIndex = this.at;
     const raised = superscriptPattern.exec(this.text)?.[0];
     if (raised !== undefined && this.before === 'operand') {
-      this.out.push(`^(${superscriptToNumber(raised)})`);
+      this.out.push('^');
+      const number = superscriptToNumber(raised);
+      this.place({ text: String(number), number, u: null, exactly: false, unit: null, ambiguous: [] });
       this.at += raised.length;
       return;
     }

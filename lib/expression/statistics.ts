@@ -123,6 +123,13 @@ export function statistic(
   return { kind: 'scalar', value: found.value, ...resulting, terms };
 }
 
+/** The same statistic under the symbol that a line gives it, as its readers know it. */
+export function named(scalar: Scalar, symbol: string): Scalar {
+  const [id, term] = [...scalar.terms].at(-1) ?? [];
+  if (id === undefined || !term || term.input.sample === null) return scalar;
+  return { ...scalar, terms: new Map(scalar.terms).set(id, { ...term, input: { ...term.input, label: symbol } }) };
+}
+
 function pick(series: Float64Array, gathered: Gathered): Float64Array {
   const result = new Float64Array(gathered.rows.length);
   for (let i = 0; i < result.length; i++) result[i] = series[gathered.rows[i] as number] as number;

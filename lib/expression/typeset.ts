@@ -6,16 +6,11 @@ import type { Expression } from './parse';
 
 /** Typesetting: italic quantity symbols, upright subscripts, functions and units (SI Brochure 5.4; ISO 80000-1, 7). */
 
-const greek = new Set([
-  'alpha', 'beta', 'gamma', 'delta', 'epsilon', 'zeta', 'eta', 'theta', 'kappa', 'lambda', 'mu', 'nu', 'xi', 'rho', 'sigma',
-  'tau', 'phi', 'chi', 'psi', 'omega', 'Gamma', 'Delta', 'Theta', 'Lambda', 'Xi', 'Sigma', 'Phi', 'Psi', 'Omega',
-]); // prettier-ignore
-
-const greekLetters: Record<string, string> = {
+const greekLetters = new Map(Object.entries({
   alpha: 'α', beta: 'β', gamma: 'γ', delta: 'δ', epsilon: 'ε', zeta: 'ζ', eta: 'η', theta: 'θ', kappa: 'κ', lambda: 'λ', mu: 'μ',
   nu: 'ν', xi: 'ξ', rho: 'ρ', sigma: 'σ', tau: 'τ', phi: 'φ', chi: 'χ', psi: 'ψ', omega: 'ω', Gamma: 'Γ', Delta: 'Δ', Theta: 'Θ',
   Lambda: 'Λ', Xi: 'Ξ', Sigma: 'Σ', Phi: 'Φ', Psi: 'Ψ', Omega: 'Ω',
-}; // prettier-ignore
+})); // prettier-ignore
 
 function parts(name: string): { base: string; below: string } {
   const at = name.indexOf('_', 1);
@@ -23,11 +18,11 @@ function parts(name: string): { base: string; below: string } {
   return { base: name.slice(0, at), below: name.slice(at + 1).replaceAll('_', ', ') };
 }
 
-const letterNames = new Map(Object.entries(greekLetters).map(([name, letter]) => [letter, name]));
+const letterNames = new Map([...greekLetters].map(([name, letter]) => [letter, name]));
 
 function baseTex(base: string): string {
-  const named = greek.has(base) ? base : letterNames.get(base);
-  if (named && greek.has(named)) return `\\${named}`;
+  const name = greekLetters.has(base) ? base : letterNames.get(base);
+  if (name !== undefined) return `\\${name}`;
   return [...base].length === 1 ? base : `\\mathit{${base.replaceAll('_', '\\_')}}`;
 }
 
@@ -49,7 +44,7 @@ export function symbolMathml(name: string): string {
     return `<mi mathvariant="normal">${escaped(name.slice(0, dot))}</mi><mo>.</mo>${symbolMathml(name.slice(dot + 1))}`;
   }
   const { base, below } = parts(name);
-  const letter = `<mi mathvariant="italic">${escaped(greekLetters[base] ?? base)}</mi>`;
+  const letter = `<mi mathvariant="italic">${escaped(greekLetters.get(base) ?? base)}</mi>`;
   return below ? `<msub>${letter}<mi mathvariant="normal">${escaped(below)}</mi></msub>` : letter;
 }
 

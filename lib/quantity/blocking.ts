@@ -91,12 +91,14 @@ export function blockedMean(values: Float64Array): BlockedMean {
   const found = few || s === 0 ? 0 : plateau(levels);
   // The last level with enough blocks stands where there is no plateau.
   const usable = levels.filter(({ n }) => n >= fewestBlocks).length - 1;
-  const short = !few && found > usable;
   const at = few ? 0 : Math.max(0, Math.min(found, usable));
   const chosen = levels[at] as Level;
   const u = Math.sqrt(chosen.variance / chosen.n);
   // Blocks of independent samples may come out below s/√n by chance; correlation that lowers u is not claimed.
   const effective = u > 0 ? Math.min(count, first.variance / (u * u)) : count;
+  // Correlation over an eighth of the series leaves few effective samples; where there are many, the test has only
+  // met with chance (it does so in some per cent of white series), and the widest blocks are merely cautious.
+  const short = !few && found > usable && effective < 4 * chosen.n;
   return {
     mean: centre,
     s,

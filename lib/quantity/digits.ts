@@ -27,8 +27,12 @@ function pointed(digits: string, place: number): string {
   return `${padded.slice(0, place)}.${padded.slice(place)}`;
 }
 
-/** A power of ten is written out where the number would run over this many places before or after the point. */
-const largest = 6;
+/**
+ * A power of ten is split off where the first digit stands further from the point than this, and where zeros before the
+ * point would claim digits that are not known.
+ */
+const largest = 9;
+const largestRound = 6;
 const smallest = -4;
 
 /** value ± u with `significant` digits of u (GUM 7.2.6); u > 0. */
@@ -67,7 +71,8 @@ export function exactDigits(value: number): Digits {
   let read = exponential(value, 12);
   if (read.digits.replace(/0+$/, '').length > 10) read = exponential(value, 7);
   const digits = read.digits.replace(/0+$/, '');
-  const shift = read.exponent > largest || read.exponent < smallest ? read.exponent : 0;
+  const round = read.exponent > largestRound && digits.length <= read.exponent;
+  const shift = round || read.exponent > largest || read.exponent < smallest ? read.exponent : 0;
   const place = read.exponent - (digits.length - 1) - shift;
   return { negative: value < 0, number: pointed(digits, place), last: null, plusMinus: null, exponent: shift };
 }

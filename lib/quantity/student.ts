@@ -53,6 +53,9 @@ function fraction(x: number, a: number, b: number): number {
 /** Beyond this many degrees of freedom t and the normal distribution agree to better than 1e-7. */
 const asGoodAsNormal = 1e7;
 
+/** From here on the expansion in 1/ν has all the digits of a double that matter. */
+const manyDegrees = 1000;
+
 const known = new Map<string, number>();
 
 /** t_p(ν): half-width of the interval, in standard uncertainties, that covers `probability`; ν ≥ 1, null for infinite. */
@@ -68,9 +71,12 @@ export function coverageFactor(probability: number, dof: number | null): number 
 }
 
 function solveStudent(probability: number, dof: number): number {
+  // The next term of the expansion is below 1e-13 of t there.
+  if (dof >= manyDegrees) return expansion(normalCoverageFactor(probability), dof);
   const norm = Math.exp(logGamma((dof + 1) / 2) - logGamma(dof / 2)) / Math.sqrt(dof * Math.PI);
-  // 1 − P is convex for t > 0, so Newton's steps from the left approach the root without overshooting.
-  let t = normalCoverageFactor(probability);
+  // 1 − P is convex for t > 0, so Newton's steps from the left approach the root without overshooting; for more than a
+  // few degrees of freedom the expansion starts them within a step or two of it.
+  let t = dof < 10 ? normalCoverageFactor(probability) : expansion(normalCoverageFactor(probability), dof);
   for (let step = 0; step < 200; step++) {
     const tail = incompleteBeta(dof / (dof + t * t), dof / 2, 0.5) - (1 - probability);
     const density = norm * Math.pow(1 + (t * t) / dof, -(dof + 1) / 2);
@@ -79,6 +85,16 @@ function solveStudent(probability: number, dof: number): number {
     if (Math.abs(move) <= 1e-14 * t) break;
   }
   return t;
+}
+
+/** t in powers of 1/ν (Abramowitz and Stegun 26.7.5). */
+function expansion(z: number, dof: number): number {
+  const s = z * z;
+  const g1 = (z * (s + 1)) / 4;
+  const g2 = (z * ((5 * s + 16) * s + 3)) / 96;
+  const g3 = (z * (((3 * s + 19) * s + 17) * s - 15)) / 384;
+  const g4 = (z * ((((79 * s + 776) * s + 1482) * s - 1920) * s - 945)) / 92160;
+  return z + (g1 + (g2 + (g3 + g4 / dof) / dof) / dof) / dof;
 }
 
 /** z with erf(z/√2) = probability. */

@@ -102,7 +102,8 @@ export function prefixPower(unit: Unit): number {
 export function readableUnit(dimension: Dimension, magnitude: number, hint: Unit | null): Unit {
   const base = hint && sameDimension(hint.dimension, dimension) ? hint : unitFor(dimension);
   if (!takesPrefix(base) || magnitude === 0 || !Number.isFinite(magnitude)) return base;
-  const inHint = magnitude / base.factor;
+  // Seven digits: 0.1 and 0.1 less a last bit choose the same prefix.
+  const inHint = Number((magnitude / base.factor).toExponential(6));
   if (base === hint && inHint >= 0.1 && inHint < 10_000) return base;
   const plain = withPrefix(base, 0);
   const exponent = Number((magnitude / plain.factor).toExponential(6).split('e')[1]);
