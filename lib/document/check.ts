@@ -12,12 +12,13 @@ import {
 import { documentSchema } from './extensions';
 import type { DocumentJson, NodeJson } from './json';
 import { allowedLink } from './nodes/link';
+import { widestSpan } from './nodes/table-cells';
 import { checkStructure, refuse } from './structure-check';
 
 export { documentLimits } from './structure-check';
 
 const id = blockIdSchema.nullable().optional();
-const span = z.number().int().min(1).max(1000).optional();
+const span = z.number().int().min(1).max(widestSpan).optional();
 const cell = z
   .object({
     colspan: span,

@@ -223,7 +223,12 @@ export function documentDifference(before: DocumentJson, after: DocumentJson): D
   };
 }
 
-function compareBlock(id: string, was: NodeJson | undefined, is: NodeJson | undefined, moved: boolean): BlockDifference {
+function compareBlock(
+  id: string,
+  was: NodeJson | undefined,
+  is: NodeJson | undefined,
+  moved: boolean,
+): BlockDifference {
   const type = (is ?? was)!.type;
   const oldText = was ? documentText(was) : '';
   const newText = is ? documentText(is) : '';

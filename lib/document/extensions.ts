@@ -1,6 +1,6 @@
 import { getSchema, type Extensions } from '@tiptap/core';
 import { TaskItem, TaskList } from '@tiptap/extension-list';
-import { Table, TableCell, TableHeader, TableRow } from '@tiptap/extension-table';
+import { Table, TableRow } from '@tiptap/extension-table';
 import type { Schema } from '@tiptap/pm/model';
 import StarterKit from '@tiptap/starter-kit';
 import { caution } from './nodes/caution';
@@ -11,6 +11,7 @@ import { logLine } from './nodes/log-line';
 import { picture } from './nodes/picture';
 import { subscript, superscript } from './nodes/scripts';
 import { sheet } from './nodes/sheet';
+import { tableCell, tableHeader } from './nodes/table-cells';
 import { trace } from './nodes/trace';
 import { value } from './nodes/value';
 
@@ -30,8 +31,8 @@ export const textExtensions: Extensions = [
   TaskItem.configure({ nested: true, a11y: { checkboxLabel: (node) => node.textContent || 'empty line of the list' } }),
   Table.configure({ resizable: false }),
   TableRow,
-  TableHeader,
-  TableCell,
+  tableHeader,
+  tableCell,
   link,
   subscript,
   superscript,

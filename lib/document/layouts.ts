@@ -53,7 +53,13 @@ function cooldownDay(): DocumentJson {
       heading('State of the cryostat'),
       table(
         ['quantity', 'value', 'read at'],
-        ['temperature of the sample stage', 'temperature of the bath or second stage', 'helium level', 'pressure, insert', 'pressure, vacuum space'],
+        [
+          'temperature of the sample stage',
+          'temperature of the bath or second stage',
+          'helium level',
+          'pressure, insert',
+          'pressure, vacuum space',
+        ],
       ),
       heading('Safety checks'),
       checklist([

@@ -17,7 +17,8 @@ type Work = { value: unknown; role: 'node' | 'mark' | 'plain'; depth: number; bl
 const placeOf = (block: number) => (block === 0 ? 'The document' : `Block ${block}`);
 
 function fields(value: unknown, place: string, what: string): [string, unknown][] {
-  if (typeof value !== 'object' || value === null || Array.isArray(value)) refuse(place, `${what} has to be an object.`);
+  if (typeof value !== 'object' || value === null || Array.isArray(value))
+    refuse(place, `${what} has to be an object.`);
   const prototype: unknown = Object.getPrototypeOf(value);
   if (prototype !== Object.prototype && prototype !== null) refuse(place, `${what} has to be a plain object.`);
   return Object.entries(value);
@@ -43,7 +44,8 @@ export function checkStructure(json: unknown): asserts json is NodeJson {
   let bytes = 0;
   const addText = (text: string, place: string) => {
     bytes += utf8Length(text);
-    if (/\p{Surrogate}/u.test(text)) refuse(place, 'holds half of a character (a lone surrogate). Type that place again.');
+    if (/\p{Surrogate}/u.test(text))
+      refuse(place, 'holds half of a character (a lone surrogate). Type that place again.');
     if (text.includes('\u0000')) refuse(place, 'holds a NUL character, which cannot be kept. Remove it.');
   };
   for (let item = work.pop(); item !== undefined; item = work.pop()) {

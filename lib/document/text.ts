@@ -2,7 +2,16 @@ import { cautionText } from './caution-text';
 import type { NodeJson } from './json';
 import { valueLine } from './nodes/value';
 
-const lineTypes = new Set(['paragraph', 'heading', 'codeBlock', 'logLine', 'equationBlock', 'caution', 'picture', 'trace']);
+const lineTypes = new Set([
+  'paragraph',
+  'heading',
+  'codeBlock',
+  'logLine',
+  'equationBlock',
+  'caution',
+  'picture',
+  'trace',
+]);
 
 function leafText(node: NodeJson): string {
   const attrs = node.attrs ?? {};

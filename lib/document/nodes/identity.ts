@@ -42,7 +42,8 @@ export const identity = Extension.create({
             default: null,
             keepOnSplit: false,
             validate: (value: unknown) => {
-              if (value !== null && !isId(value)) throw new RangeError('attribute “id”: 6 to 32 letters, digits, _ or -');
+              if (value !== null && !isId(value))
+                throw new RangeError('attribute “id”: 6 to 32 letters, digits, _ or -');
             },
             parseHTML: (element: HTMLElement) => {
               const id = element.getAttribute('data-id');
@@ -54,6 +55,11 @@ export const identity = Extension.create({
         },
       },
     ];
+  },
+  onCreate() {
+    const { state, view } = this.editor;
+    const settled = this.editor.isEditable ? settleIdentity(state.tr, new Map()) : null;
+    if (settled) view.dispatch(settled.setMeta('addToHistory', false));
   },
   addProseMirrorPlugins() {
     return [
