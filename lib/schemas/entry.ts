@@ -11,7 +11,13 @@ export const workDateSchema = z.iso.date();
 
 /** When a block was first written and last changed: `at` by the writer's clock, `received` by the server's. */
 export const stampSchema = z
-  .object({ at: z.iso.datetime({ offset: true }), received: z.iso.datetime({ offset: true }), by: z.string() })
+  .object({
+    at: z.iso.datetime({ offset: true }),
+    received: z.iso.datetime({ offset: true }),
+    by: z.string(),
+    /** The writer's clock minus the server's, as measured then, in ms. */
+    offsetMs: z.number(),
+  })
   .strict();
 export const blockStampSchema = z
   .object({ first: stampSchema, last: stampSchema, digest: z.string() })
