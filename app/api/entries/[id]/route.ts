@@ -1,0 +1,8 @@
+import { withAccess } from '@/server/access/route';
+import { changeFacts, entryFactsSchema, readEntry } from '@/server/entries/service';
+
+export const GET = withAccess({ action: 'entry.read' }, ({ scope }) => readEntry(scope));
+export const PUT = withAccess({ action: 'entry.write', body: entryFactsSchema }, async ({ scope, body }) => {
+  await changeFacts(scope, body);
+  return null;
+});
