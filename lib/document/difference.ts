@@ -1,6 +1,7 @@
 import { diffWordsWithSpace } from 'diff';
 import type { DocumentJson, NodeJson } from './json';
 import { valueLine } from './nodes/value';
+import { sameDocument } from './same';
 import { documentText } from './text';
 
 export type TextPart = { text: string; change: 'same' | 'added' | 'removed' };
@@ -26,19 +27,6 @@ export type DocumentDifference = {
 };
 
 const idOf = (block: NodeJson, index: number) => (typeof block.attrs?.id === 'string' ? block.attrs.id : `#${index}`);
-
-/** Same JSON, whatever the order of keys. */
-function sameJson(a: unknown, b: unknown): boolean {
-  if (Object.is(a, b)) return true;
-  if (typeof a !== 'object' || typeof b !== 'object' || a === null || b === null) return false;
-  if (Array.isArray(a) !== Array.isArray(b)) return false;
-  const keys = Object.keys(a);
-  const other = b as Record<string, unknown>;
-  return (
-    keys.length === Object.keys(b).length &&
-    keys.every((key) => key in other && sameJson((a as Record<string, unknown>)[key], other[key]))
-  );
-}
 
 export function textDifference(before: string, after: string): TextPart[] {
   if (before === after) return before === '' ? [] : [{ text: before, change: 'same' }];
@@ -232,7 +220,7 @@ function compareBlock(
   const type = (is ?? was)!.type;
   const oldText = was ? documentText(was) : '';
   const newText = is ? documentText(is) : '';
-  if (was && is && sameJson(was, is)) {
+  if (was && is && sameDocument(was, is)) {
     return { id, type, change: 'same', moved, parts: textDifference(oldText, newText), values: [], facts: [] };
   }
   return {

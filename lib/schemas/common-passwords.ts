@@ -12,5 +12,7 @@ export const commonPasswords: ReadonlySet<string> = new Set(
   september februar1 summer123 winter123 spring123 autumn123 liverpool chelsea1 arsenal1 barcelona realmadrid manchester bayern123
   freedom1 forever1 blink182 metallica nirvana1 slipknot rammstein killer123 hello123 hello1234 helloworld q1w2e3r4 q1w2e3r4t5
   zxcvbnm123 asdfasdf qweasdzxc 1234qwer qwer1234 q1w2e3r4t5y6 password! password1! passwort passwort1 passwort123 hallo123 schatzi1
-  motdepasse azertyui azertyuiop contrase contraseña 123qweasd 1qaz2wsx3edc laboratory laboratory1 notebook notebook1`.split(/\s+/),
+  motdepasse azertyui azertyuiop contrase contraseña 123qweasd 1qaz2wsx3edc laboratory laboratory1 notebook notebook1`.split(
+    /\s+/,
+  ),
 );

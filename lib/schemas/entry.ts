@@ -19,9 +19,7 @@ export const stampSchema = z
     offsetMs: z.number(),
   })
   .strict();
-export const blockStampSchema = z
-  .object({ first: stampSchema, last: stampSchema, digest: z.string() })
-  .strict();
+export const blockStampSchema = z.object({ first: stampSchema, last: stampSchema, digest: z.string() }).strict();
 export type BlockStamp = z.infer<typeof blockStampSchema>;
 export type BlockStamps = Record<string, BlockStamp>;
 
@@ -65,7 +63,14 @@ export type TraceDto = {
   problem: string | null;
   rows: number;
   /** As found in the file; symbol is a proposal for the node's settings. */
-  columns: { name: string; symbol: string; unit: string | null; missing: number; min: number | null; max: number | null }[];
+  columns: {
+    name: string;
+    symbol: string;
+    unit: string | null;
+    missing: number;
+    min: number | null;
+    max: number | null;
+  }[];
   comments: string[];
   uploadedBy: PersonDto;
   receivedAt: string;
@@ -115,7 +120,15 @@ export type EntryDto = {
   questions: QuestionDto[];
   signatures: SignatureDto[];
   traces: TraceDto[];
-  may: { write: boolean; ask: boolean; answer: boolean; sign: boolean; countersign: boolean; strikeOut: boolean; invite: boolean };
+  may: {
+    write: boolean;
+    ask: boolean;
+    answer: boolean;
+    sign: boolean;
+    countersign: boolean;
+    strikeOut: boolean;
+    invite: boolean;
+  };
   /** Why countersigning is refused now, as a sentence; null when it may go on or does not concern this reader. */
   countersignObstacle: string | null;
   /** How many of the version's traces this reader has been served. */

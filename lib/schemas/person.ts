@@ -13,7 +13,10 @@ export const personNameSchema = z
       .string()
       .min(2, 'Give the full name, as it is to be printed with a signature.')
       .max(120, 'A name has at most 120 characters.')
-      .refine((name) => !invisible.test(name), 'The name has invisible or direction-changing characters; type it anew.'),
+      .refine(
+        (name) => !invisible.test(name),
+        'The name has invisible or direction-changing characters; type it anew.',
+      ),
   );
 
 export const emailSchema = z
@@ -29,7 +32,10 @@ export const passwordSchema = z
   .string()
   .min(8, 'A password has at least 8 characters.')
   .max(128, 'A password has at most 128 characters.')
-  .refine((password) => !commonPasswords.has(password.toLowerCase()), 'This password is among the first that anyone tries; choose another.');
+  .refine(
+    (password) => !commonPasswords.has(password.toLowerCase()),
+    'This password is among the first that anyone tries; choose another.',
+  );
 
 export const installationRoles = ['administrator', 'member'] as const;
 export const notebookRoles = ['lead', 'author', 'witness', 'reader'] as const;
