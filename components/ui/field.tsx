@@ -12,7 +12,13 @@ export function Field({ label, hint, problem, ...input }: Common & InputHTMLAttr
       <label htmlFor={id} className="font-medium">
         {label}
       </label>
-      <input id={id} className="field" aria-invalid={problem ? true : undefined} aria-describedby={describedBy(id, hint, problem)} {...input} />
+      <input
+        id={id}
+        className="field"
+        aria-invalid={problem ? true : undefined}
+        aria-describedby={describedBy(id, hint, problem)}
+        {...input}
+      />
       <Notes id={id} hint={hint} problem={problem} />
     </div>
   );
@@ -25,7 +31,14 @@ export function LongField({ label, hint, problem, ...input }: Common & TextareaH
       <label htmlFor={id} className="font-medium">
         {label}
       </label>
-      <textarea id={id} className="field" rows={3} aria-invalid={problem ? true : undefined} aria-describedby={describedBy(id, hint, problem)} {...input} />
+      <textarea
+        id={id}
+        className="field"
+        rows={3}
+        aria-invalid={problem ? true : undefined}
+        aria-describedby={describedBy(id, hint, problem)}
+        {...input}
+      />
       <Notes id={id} hint={hint} problem={problem} />
     </div>
   );
@@ -37,7 +50,9 @@ export function Choice({
   hint,
   problem,
   ...select
-}: Common & { options: readonly (string | { value: string; text: string })[] } & React.SelectHTMLAttributes<HTMLSelectElement>) {
+}: Common & {
+  options: readonly (string | { value: string; text: string })[];
+} & React.SelectHTMLAttributes<HTMLSelectElement>) {
   const id = useId();
   return (
     <div>

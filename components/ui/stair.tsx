@@ -57,7 +57,14 @@ export function RisingLine({ done, of, label }: { done: number; of: number; labe
   const share = of > 0 ? Math.min(1, done / of) : 0;
   const percent = Math.round(share * 100);
   return (
-    <span role="progressbar" aria-label={label} aria-valuemin={0} aria-valuemax={100} aria-valuenow={percent} className="block">
+    <span
+      role="progressbar"
+      aria-label={label}
+      aria-valuemin={0}
+      aria-valuemax={100}
+      aria-valuenow={percent}
+      className="block"
+    >
       <svg viewBox="0 0 120 18" width="120" height="18" aria-hidden="true">
         <path d="M1 16 H40 V10 H80 V4 H119" fill="none" stroke="var(--rule)" strokeWidth="2.5" />
         <path

@@ -10,7 +10,6 @@ export const trace = Node.create({
   name: 'trace',
   group: 'sheet',
   atom: true,
-  draggable: true,
   addAttributes: () => ({
     traceId: attributeRule('traceId', shape.traceId),
     handle: attributeRule('handle', shape.handle),

@@ -1,0 +1,43 @@
+'use client';
+
+import { createContext, useContext, useSyncExternalStore } from 'react';
+import type { ValueResult } from '@/lib/expression/contract';
+import type { PersonDto, TraceDto } from '@/lib/schemas/entry';
+import type { SheetStore } from './sheet-store';
+
+/** What the provenance column shows: a value or trace, or the block that the cursor stands in. */
+export type Focus = { kind: 'value' | 'trace' | 'block'; id: string; blockId: string | null; quote: string };
+
+export type SheetContextValue = {
+  entryId: string;
+  mode: 'write' | 'read';
+  person: PersonDto | null;
+  store: SheetStore;
+  traces: ReadonlyMap<string, TraceDto>;
+  focus: Focus | null;
+  setFocus: (focus: Focus | null) => void;
+};
+
+const SheetContext = createContext<SheetContextValue | null>(null);
+
+export const SheetProvider = SheetContext.Provider;
+
+export function useSheet(): SheetContextValue {
+  const sheet = useContext(SheetContext);
+  if (!sheet) throw new Error('A part of the sheet stands outside of it.');
+  return sheet;
+}
+
+/** The result of one value, again whenever it changes. */
+export function useResult(id: string): ValueResult | undefined {
+  const { store } = useSheet();
+  return useSyncExternalStore(
+    store.subscribe,
+    () => store.result(id),
+    () => undefined,
+  );
+}
+
+export function useTrace(traceId: string): TraceDto | undefined {
+  return useSheet().traces.get(traceId);
+}

@@ -1,0 +1,66 @@
+import type { Editor } from '@tiptap/core';
+import { ReactNodeViewRenderer } from '@tiptap/react';
+import { symbolSchema, type TraceNodeAttributes } from '@/lib/document/attributes';
+import { newBlockId } from '@/lib/document/block-id';
+import { freeHandle } from '@/lib/document/nodes/identity';
+import { trace } from '@/lib/document/nodes/trace';
+import type { TraceDto } from '@/lib/schemas/entry';
+import { TraceView } from './view';
+
+/** What a trace node says before its author has said anything: the columns as found in the file, units as stated there. */
+export function attributesForTrace(file: TraceDto, handle: string): TraceNodeAttributes {
+  const columns = file.columns.slice(0, 256).map((column, index) => ({
+    name: column.name.slice(0, 300),
+    symbol: symbolSchema.safeParse(column.symbol).success ? column.symbol : `c${index + 1}`,
+    unit: column.unit,
+    gain: null,
+    offset: null,
+  }));
+  const nothing = { frequency: null, waveform: null, amplitude: null, load: null, wait: null, eject: null };
+  return {
+    id: newBlockId(),
+    traceId: file.id,
+    handle,
+    settings: {
+      columns,
+      scanKind: null,
+      sign: null,
+      signConvention: null,
+      drive: nothing,
+      instrument: { name: null, range: null, bandwidth: null, integrationTime: null, overload: null },
+      sweepDirection: null,
+    },
+    spans: [],
+    view: {
+      x: columns[0]?.symbol ?? null,
+      y: columns.slice(1, 2).map((column) => column.symbol),
+      logX: false,
+      logY: false,
+      range: null,
+    },
+  };
+}
+
+export function handlesOf(editor: Editor): Set<string> {
+  const taken = new Set<string>();
+  editor.state.doc.forEach((block) => {
+    if (block.type.name === 'trace') taken.add(String(block.attrs.handle));
+  });
+  return taken;
+}
+
+/** Puts a trace at the cursor under the next free handle, with a line to write on after it. */
+export function insertTrace(editor: Editor, file: TraceDto, position?: number): boolean {
+  const attrs = attributesForTrace(file, freeHandle('t', handlesOf(editor)));
+  const content = [{ type: 'trace', attrs }, { type: 'paragraph' }];
+  if (position !== undefined) return editor.commands.insertContentAt(position, content);
+  return editor.chain().focus().insertContent(content).run();
+}
+
+export const traceWithView = trace.extend({
+  addNodeView: () =>
+    ReactNodeViewRenderer(TraceView, {
+      // Dragging over the plot names spans; ProseMirror gets nothing of what happens inside.
+      stopEvent: () => true,
+    }),
+});

@@ -1,0 +1,39 @@
+'use client';
+
+import { NodeViewWrapper, type ReactNodeViewProps } from '@tiptap/react';
+import type { TraceNodeAttributes } from '@/lib/document/attributes';
+import { useSheet, useTrace } from '@/components/editor/sheet-context/context';
+
+/** A trace in the text: its plot, and below it handle, file, size and digest. */
+export function TraceView({ node, selected }: ReactNodeViewProps) {
+  const attributes = node.attrs as TraceNodeAttributes;
+  const file = useTrace(attributes.traceId);
+  const { setFocus, focus } = useSheet();
+  const choose = () => setFocus({ kind: 'trace', id: attributes.id, blockId: attributes.id, quote: attributes.handle });
+  return (
+    <NodeViewWrapper
+      as="section"
+      className={`trace ${selected || focus?.id === attributes.id ? 'chosen' : ''}`}
+      data-id={attributes.id}
+      aria-label={`trace ${attributes.handle}`}
+      onClick={choose}
+      onFocusCapture={choose}
+    >
+      {file?.state === 'unreadable' ? <p className="text-error">{file.problem}</p> : null}
+      <p className="trace-foot">
+        <strong className="figures">{attributes.handle}</strong>
+        {file ? (
+          <>
+            <span>{file.fileName}</span>
+            <span>
+              {file.columns.length} columns, {file.rows.toLocaleString('en').replaceAll(',', '\u2009')} rows
+            </span>
+            <span className="trace-digest figures">digest {file.sha256.slice(0, 8)}</span>
+          </>
+        ) : (
+          <span>The file is being fetched.</span>
+        )}
+      </p>
+    </NodeViewWrapper>
+  );
+}
