@@ -36,6 +36,7 @@ export default defineConfig({
         test: {
           name: 'services',
           include: ['tests/{integration,attacks,faults}/**/*.test.ts'],
+          globalSetup: ['tests/integration/template.ts'],
           environment: 'node',
           testTimeout: 120_000,
           hookTimeout: 120_000,

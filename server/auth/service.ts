@@ -102,8 +102,9 @@ export async function beginSecondFactor(headers: Headers, person: Person, passwo
   await takeTurn(`password:${person.id}`, 10, 600);
   const auth = await getAuth();
   try {
-    const { totpURI, backupCodes } = await auth.api.enableTwoFactor({ body: { password }, headers });
-    return { uri: totpURI, recoveryCodes: backupCodes };
+    const made = await auth.api.enableTwoFactor({ body: { password }, headers });
+    if (made.method !== 'totp') throw new AppError('internal', 'The second factor could not be set up. Nothing was changed.');
+    return { uri: made.totpURI, recoveryCodes: made.backupCodes };
   } catch (error) {
     if (!(error instanceof APIError)) throw error;
     throw new AppError('invalid', 'The password is not right. Nothing was changed.', { field: 'password', cause: error });
