@@ -58,11 +58,25 @@ export const versionRecordSchema = z
     traces: z.array(boundTraceSchema),
     pictures: z.array(
       z
-        .object({ pictureId: z.string(), fileName: z.string(), mediaType: z.string(), bytes: z.number().int(), sha256: z.string().length(64) })
+        .object({
+          pictureId: z.string(),
+          fileName: z.string(),
+          mediaType: z.string(),
+          bytes: z.number().int(),
+          sha256: z.string().length(64),
+        })
         .strict(),
     ),
     questions: z.array(
-      z.object({ id: z.string(), text: z.string(), askedBy: z.string(), askedAt: z.string(), answers: z.array(z.string()) }).strict(),
+      z
+        .object({
+          id: z.string(),
+          text: z.string(),
+          askedBy: z.string(),
+          askedAt: z.string(),
+          answers: z.array(z.string()),
+        })
+        .strict(),
     ),
     author: personSchema,
     contributors: z.array(personSchema),

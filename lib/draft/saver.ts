@@ -85,8 +85,11 @@ export class DraftSaver {
     this.tell();
   }
 
-  /** Takes up what an earlier window of the same person could not send. */
-  restore(kept: Pick<KeptDraft, 'revision' | 'title' | 'doc' | 'written' | 'sending'>): void {
+  /**
+   * Takes up what an earlier window of the same person could not send. Resolves true once this window's own copy is
+   * in the browser's store, so that the other may be cleared.
+   */
+  restore(kept: Pick<KeptDraft, 'revision' | 'title' | 'doc' | 'written' | 'sending'>): Promise<boolean> {
     this.title = kept.title;
     this.doc = kept.doc;
     this.revision = kept.revision;
@@ -94,9 +97,10 @@ export class DraftSaver {
     this.sending = kept.sending;
     this.unsent = true;
     this.status = { kind: 'kept', why: 'resting' };
-    this.keepSoon();
+    const done = this.keepNow();
     this.sendAfterRest();
     this.tell();
+    return done;
   }
 
   /** The server's draft was changed elsewhere and nothing here is unsent: take it over. False if something is. */
@@ -126,10 +130,17 @@ export class DraftSaver {
 
   /** The person has signed in again, the network is back, or they ask to try now. */
   resume(): void {
-    if (this.status.kind === 'signed-out' || this.status.kind === 'refused')
-      this.status = { kind: 'kept', why: 'resting' };
+    if (this.status.kind === 'signed-out' || this.status.kind === 'refused') {
+      this.status = this.unsent ? { kind: 'kept', why: 'resting' } : { kind: 'saved', at: this.start.savedAt };
+    }
     this.failures = 0;
     if (this.unsent) this.sendNow();
+    this.tell();
+  }
+
+  /** Another request was told that the session has ended. */
+  sessionEnded(): void {
+    this.status = { kind: 'signed-out' };
     this.tell();
   }
 
@@ -145,14 +156,14 @@ export class DraftSaver {
 
   /** The window is going: keep at once, and hand the network one last save that may outlive the page. */
   leave(): void {
-    this.keepNow();
-    if (this.unsent && !this.onItsWay && this.maySend()) void this.sendNow(true);
+    void this.keepNow();
+    if (this.unsent && !this.onItsWay && this.maySend()) this.sendNow(true);
   }
 
   close(): void {
     this.closed = true;
     this.cancelSend?.();
-    if (this.cancelKeep) this.keepNow();
+    if (this.cancelKeep) void this.keepNow();
     this.listeners.clear();
   }
 
@@ -161,25 +172,27 @@ export class DraftSaver {
   }
 
   private keepSoon(): void {
-    this.cancelKeep ??= this.ports.schedule(() => this.keepNow(), draftTimes.keep);
+    this.cancelKeep ??= this.ports.schedule(() => void this.keepNow(), draftTimes.keep);
   }
 
-  private keepNow(): void {
+  private keepNow(): Promise<boolean> {
     this.cancelKeep?.();
     this.cancelKeep = null;
-    if (!this.unsent) return;
+    if (!this.unsent) return Promise.resolve(true);
     const { title, doc, revision, written, sending } = this;
     const kept = { keptAt: this.ports.now().toISOString(), title, doc, revision, written: { ...written }, sending };
-    this.ports.keep(kept).then(
+    return this.ports.keep(kept).then(
       () => this.setKeeps(true),
       () => this.setKeeps(false),
     );
   }
 
-  private setKeeps(keeps: boolean): void {
-    if (this.keeps === keeps) return;
-    this.keeps = keeps;
-    this.tell();
+  private setKeeps(keeps: boolean): boolean {
+    if (this.keeps !== keeps) {
+      this.keeps = keeps;
+      this.tell();
+    }
+    return keeps;
   }
 
   private sendAfterRest(): void {
@@ -210,7 +223,7 @@ export class DraftSaver {
         saveId: this.ports.newId(),
       };
       // Its saveId has to outlive a crash between commit and reply, or our own save would look like someone else's.
-      this.keepNow();
+      void this.keepNow();
     }
     const body = this.sending;
     this.onItsWay = true;
@@ -267,7 +280,7 @@ export class DraftSaver {
       }
       this.sending = null;
       this.status = { kind: 'conflict', current };
-      this.keepNow();
+      void this.keepNow();
       return this.answer(false);
     }
     if (code === 'signed_out' || code === 'renewal_needed') {

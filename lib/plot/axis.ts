@@ -98,7 +98,10 @@ export function linearTicks(from: number, to: number, count: number): Tick[] {
   const last = Math.floor(to / step + 1e-9);
   for (let i = first; i <= last && ticks.length < 100; i += 1) {
     const value = i * step;
-    ticks.push({ value, text: decimals > 12 || Math.abs(value) >= 1e9 ? sampleText(value) : numberText(value, decimals) });
+    ticks.push({
+      value,
+      text: decimals > 12 || Math.abs(value) >= 1e9 ? sampleText(value) : numberText(value, decimals),
+    });
   }
   return ticks;
 }
@@ -116,7 +119,12 @@ export function logTicks(from: number, to: number, count: number): Tick[] {
       const value = lead * 10 ** power;
       if (value < from * (1 - 1e-9) || value > to * (1 + 1e-9)) continue;
       const small = power >= -2 && power <= 3;
-      ticks.push({ value, text: small ? numberText(value, Math.max(0, -power)) : `${lead === 1 ? '' : `${lead}${THIN}×${THIN}`}10${superscript(power)}` });
+      ticks.push({
+        value,
+        text: small
+          ? numberText(value, Math.max(0, -power))
+          : `${lead === 1 ? '' : `${lead}${THIN}×${THIN}`}10${superscript(power)}`,
+      });
     }
   }
   return ticks;

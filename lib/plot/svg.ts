@@ -23,17 +23,24 @@ export type SvgPlot = {
 };
 
 export function escapeXml(text: string): string {
-  return text
-    // eslint-disable-next-line no-control-regex -- XML 1.0 has no way to write these characters
-    .replace(/[\u0000-\u0008\u000b\u000c\u000e-\u001f]/g, '')
-    .replaceAll('&', '&amp;')
-    .replaceAll('<', '&lt;')
-    .replaceAll('>', '&gt;')
-    .replaceAll('"', '&quot;');
+  return (
+    text
+      // eslint-disable-next-line no-control-regex -- XML 1.0 has no way to write these characters
+      .replace(/[\u0000-\u0008\u000b\u000c\u000e-\u001f]/g, '')
+      .replaceAll('&', '&amp;')
+      .replaceAll('<', '&lt;')
+      .replaceAll('>', '&gt;')
+      .replaceAll('"', '&quot;')
+  );
 }
 
 /** Maps a value to its place on an axis; NaN where a logarithmic axis cannot show it. */
-export function axisPlace(range: [number, number], log: boolean, start: number, end: number): (value: number) => number {
+export function axisPlace(
+  range: [number, number],
+  log: boolean,
+  start: number,
+  end: number,
+): (value: number) => number {
   const turn = (value: number) => (log ? (value > 0 ? Math.log10(value) : NaN) : value);
   const low = turn(range[0]);
   const high = turn(range[1]);

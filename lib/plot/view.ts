@@ -35,7 +35,11 @@ export type ViewRange = { from: number | null; to: number | null; pixels: number
 /** Up to this many points per pixel are sent as they are. */
 const density = 2;
 
-export function memorySource(samples: Float64Array, direction: Direction, pyramid: PyramidLevel[] = buildPyramid(samples)): SampleSource {
+export function memorySource(
+  samples: Float64Array,
+  direction: Direction,
+  pyramid: PyramidLevel[] = buildPyramid(samples),
+): SampleSource {
   return {
     rows: samples.length,
     direction,
@@ -71,7 +75,7 @@ export function rowNumberSource(rows: number): SampleSource {
 /** Levels of a pyramid over so many rows, without its entries. */
 export function buildLevelCounts(rows: number): { bucket: number; count: number }[] {
   const levels = [{ bucket: 16, count: Math.ceil(rows / 16) }];
-  for (let last = levels[0] as { bucket: number; count: number }; last.count > 64; ) {
+  for (let last = levels[0] as { bucket: number; count: number }; last.count > 64;) {
     last = { bucket: last.bucket * 4, count: Math.ceil(last.count / 4) };
     levels.push(last);
   }
@@ -117,11 +121,25 @@ export async function plotView(x: SampleSource, y: SampleSource, range: ViewRang
   return view;
 }
 
-async function orderedView(x: SampleSource, y: SampleSource, from: number, to: number, pixels: number): Promise<PlotView> {
+async function orderedView(
+  x: SampleSource,
+  y: SampleSource,
+  from: number,
+  to: number,
+  pixels: number,
+): Promise<PlotView> {
   const rows = to - from;
   if (rows <= density * pixels) {
     const samples = Float64Array.from(await y.samples(from, to));
-    return { kind: 'rows', step: 1, from, to, x: Float64Array.from(await x.samples(from, to)), min: samples, max: samples.slice() };
+    return {
+      kind: 'rows',
+      step: 1,
+      from,
+      to,
+      x: Float64Array.from(await x.samples(from, to)),
+      min: samples,
+      max: samples.slice(),
+    };
   }
   // The coarsest level that still has an entry per pixel.
   let level = 0;

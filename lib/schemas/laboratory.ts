@@ -35,12 +35,43 @@ export const cooldownSchema = z
     lines: z.array(lineSchema).max(200),
   })
   .strict()
-  .refine((c) => !c.endedOn || c.endedOn >= c.startedOn, { message: 'A cooldown ends after it starts.', path: ['endedOn'] });
+  .refine((c) => !c.endedOn || c.endedOn >= c.startedOn, {
+    message: 'A cooldown ends after it starts.',
+    path: ['endedOn'],
+  });
 
 export type DeviceInput = z.infer<typeof deviceSchema>;
 export type CooldownInput = z.infer<typeof cooldownSchema>;
 
-export type DeviceDto = DeviceInput & { id: string; notebook: string; revision: number; cooldowns: { id: string; name: string }[] };
-export type DeviceLine = { id: string; notebook: string; name: string; material: string; gates: number; entries: number; cooldowns: number };
-export type CooldownDto = Omit<CooldownInput, 'deviceIds'> & { id: string; notebook: string; revision: number; devices: { id: string; name: string }[] };
-export type CooldownLine = { id: string; notebook: string; name: string; cryostat: string; startedOn: string; endedOn: string | null; baseTemperature: string; devices: string[]; entries: number };
+export type DeviceDto = DeviceInput & {
+  id: string;
+  notebook: string;
+  revision: number;
+  cooldowns: { id: string; name: string }[];
+};
+export type DeviceLine = {
+  id: string;
+  notebook: string;
+  name: string;
+  material: string;
+  gates: number;
+  entries: number;
+  cooldowns: number;
+};
+export type CooldownDto = Omit<CooldownInput, 'deviceIds'> & {
+  id: string;
+  notebook: string;
+  revision: number;
+  devices: { id: string; name: string }[];
+};
+export type CooldownLine = {
+  id: string;
+  notebook: string;
+  name: string;
+  cryostat: string;
+  startedOn: string;
+  endedOn: string | null;
+  baseTemperature: string;
+  devices: string[];
+  entries: number;
+};

@@ -13,7 +13,9 @@ export const zoneSchema = z
     }
   }, 'The time zone of this browser is not known here.');
 
-export const challengeSchema = z.object({ purpose: z.enum(['sign', 'countersign']), versionDigest: z.string().length(64) }).strict();
+export const challengeSchema = z
+  .object({ purpose: z.enum(['sign', 'countersign']), versionDigest: z.string().length(64) })
+  .strict();
 
 export const signSchema = z
   .object({
@@ -27,7 +29,14 @@ export const signSchema = z
   .strict();
 export type SignInput = z.infer<typeof signSchema>;
 
-export type ChallengeDto = { challengeId: string; purpose: 'sign' | 'countersign'; expiresAt: string; meaning: string; printedName: string; serverTime: string };
+export type ChallengeDto = {
+  challengeId: string;
+  purpose: 'sign' | 'countersign';
+  expiresAt: string;
+  meaning: string;
+  printedName: string;
+  serverTime: string;
+};
 
 /** What the sign and countersign pages show: exactly what is bound, and what is unfinished. */
 export type BindingDto = {

@@ -13,6 +13,16 @@ describe('CSV for spreadsheets', () => {
   });
 
   it('writes columns row by row', () => {
-    expect([...csvOfColumns(['t / s', 'I / pA'], [[0, 1], [-2.5, NaN]])].join('')).toBe('t / s,I / pA\r\n0,-2.5\r\n1,\r\n');
+    expect(
+      [
+        ...csvOfColumns(
+          ['t / s', 'I / pA'],
+          [
+            [0, 1],
+            [-2.5, NaN],
+          ],
+        ),
+      ].join(''),
+    ).toBe('t / s,I / pA\r\n0,-2.5\r\n1,\r\n');
   });
 });

@@ -23,7 +23,12 @@ export function csvRow(cells: CsvCell[]): string {
 }
 
 /** Columns of samples with their headers, yielded in pieces so that a long trace needs no string of its own length. */
-export function* csvOfColumns(headers: string[], columns: ArrayLike<number>[], from = 0, to?: number): Generator<string> {
+export function* csvOfColumns(
+  headers: string[],
+  columns: ArrayLike<number>[],
+  from = 0,
+  to?: number,
+): Generator<string> {
   yield csvRow(headers);
   const end = to ?? Math.max(0, ...columns.map((column) => column.length));
   let piece = '';

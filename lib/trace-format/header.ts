@@ -3,11 +3,34 @@ import type { Delimiter } from './parsed-trace';
 /** Quantity, unit and symbol from a column's header. */
 
 const bases =
-  'A V s S Hz K T W J F H C Ω Ω Ohm ohm Ohms N m g mol Pa bar min h % ‰ ppm ppb deg degC °C ° rad dB dBm dBc e eV cd lm Wb G l L u 1'.split(' ');
+  'A V s S Hz K T W J F H C Ω Ω Ohm ohm Ohms N m g mol Pa bar min h % ‰ ppm ppb deg degC °C ° rad dB dBm dBc e eV cd lm Wb G l L u 1'.split(
+    ' ',
+  );
 // deci, centi, deca and hecto are left out on purpose: with them `dI/dV` would be a current divided by a unit.
 const prefixes = ['', 'y', 'z', 'a', 'f', 'p', 'n', 'µ', 'μ', 'u', 'm', 'k', 'M', 'G', 'T', 'P'];
-const atoms = new Set(prefixes.flatMap((prefix) => bases.map((base) => prefix + base)).concat(['cm', 'dm', 'hPa', 'hour']));
-const exponents = new Set(['', '2', '3', '4', '-1', '-2', '-3', '-4', '²', '³', '⁻¹', '⁻²', '^2', '^3', '^-1', '^-2', '^(1/2)', '^0.5']);
+const atoms = new Set(
+  prefixes.flatMap((prefix) => bases.map((base) => prefix + base)).concat(['cm', 'dm', 'hPa', 'hour']),
+);
+const exponents = new Set([
+  '',
+  '2',
+  '3',
+  '4',
+  '-1',
+  '-2',
+  '-3',
+  '-4',
+  '²',
+  '³',
+  '⁻¹',
+  '⁻²',
+  '^2',
+  '^3',
+  '^-1',
+  '^-2',
+  '^(1/2)',
+  '^0.5',
+]);
 /** Units that a name can carry after an underscore without being taken for a gate's name, as `V_S` would be. */
 const suffixes = new Set(
   ['A', 'V', 'Hz', 's', 'Ohm', 'Ω']
@@ -90,7 +113,10 @@ function isSingleWord(text: string): boolean {
 
 /** The text of a unit-row cell: `(pA)`, `[pA]` and `pA` alike; null for an empty cell or a dash. */
 export function unitOfCell(cell: string): string | null {
-  const text = cell.trim().replace(/^[([]([^()[\]]*)[)\]]$/, '$1').trim();
+  const text = cell
+    .trim()
+    .replace(/^[([]([^()[\]]*)[)\]]$/, '$1')
+    .trim();
   if (text === '' || text === '--') return null;
   return text === '-' ? '1' : text;
 }

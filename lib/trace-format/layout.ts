@@ -133,7 +133,9 @@ function choose(lines: string[], strict: boolean): { best: Candidate; all: Candi
   const all = candidates.map(([delimiter, decimal]) => consider(lines, delimiter, decimal, strict));
   const commas = all.find(({ delimiter, lines: count }) => delimiter === ',' && count > 0);
   // Without a header that says so, a lone `1,5` is not taken for one number: its lines would swallow a missing cell.
-  const open = all.filter(({ columns, decimal, headerAgrees: agrees }) => !(commas && columns === 1 && decimal === ',' && !agrees));
+  const open = all.filter(
+    ({ columns, decimal, headerAgrees: agrees }) => !(commas && columns === 1 && decimal === ',' && !agrees),
+  );
   const best = open.reduce((a, b) => (better(b, a) ? b : a));
   return best.lines > 0 ? { best, all } : null;
 }
@@ -182,7 +184,9 @@ export function decideLayout(lines: string[]): Layout | null {
   const columns = split.map((column, i) => ({
     ...column,
     symbol: symbols[i] as string,
-    text: sample.every((row) => !isNumeric(row[i] as string, best.decimal)) && sample.some((row) => isWord(row[i] as string)),
+    text:
+      sample.every((row) => !isNumeric(row[i] as string, best.decimal)) &&
+      sample.some((row) => isWord(row[i] as string)),
   }));
   for (const column of columns) {
     if (column.text) notes.push(`Column "${column.header}" holds words, not numbers; it is left out of the samples.`);
@@ -215,12 +219,16 @@ function firstCandidateLine(lines: string[]): number {
 function noteAmbiguities(best: Candidate, all: Candidate[], sample: string[][], notes: string[]): void {
   const single = all.find(({ columns, decimal, lines }) => decimal === ',' && columns === 1 && lines === best.lines);
   if (best.delimiter === ',' && best.columns === 2 && single && !best.headerAgrees) {
-    notes.push('`1,5` was read as two columns, not as a decimal comma. Put a header line above the numbers to settle it.');
+    notes.push(
+      '`1,5` was read as two columns, not as a decimal comma. Put a header line above the numbers to settle it.',
+    );
   }
   if (best.decimal === ',') {
     const marked = sample.flat().filter((cell) => cell.includes(','));
     if (marked.length > 0 && marked.every((cell) => /^[+-]?[1-9][0-9]{0,2},[0-9]{3}$/.test(cell))) {
-      notes.push('Every comma stands before three digits and was read as a decimal comma, not as a thousands separator.');
+      notes.push(
+        'Every comma stands before three digits and was read as a decimal comma, not as a thousands separator.',
+      );
     }
   }
 }
@@ -234,7 +242,8 @@ function readHead(lines: string[], firstDataLine: number, layout: Candidate, not
   const comments = filled.filter(({ text }) => isComment(text));
   const plain = filled.filter(({ text }) => !isComment(text));
   const firstRow = layout.cells[firstDataLine] as string[];
-  const fits = (row: string[]) => row.length === columns || (row.length === columns - 1 && firstRow[columns - 1] === '');
+  const fits = (row: string[]) =>
+    row.length === columns || (row.length === columns - 1 && firstRow[columns - 1] === '');
 
   const cellsOf = ({ text, index }: { text: string; index: number }) => {
     const row = splitCells(text, delimiter, index + 1);

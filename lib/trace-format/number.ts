@@ -7,7 +7,20 @@
 
 export const powersOfTen = Float64Array.from({ length: 23 }, (_, i) => Number(`1e${i}`));
 
-const missingWords = new Set(['', 'nan', 'na', 'n/a', '--', '---', 'null', 'none', '-nan', '+nan', '1.#qnan', '-1.#ind']);
+const missingWords = new Set([
+  '',
+  'nan',
+  'na',
+  'n/a',
+  '--',
+  '---',
+  'null',
+  'none',
+  '-nan',
+  '+nan',
+  '1.#qnan',
+  '-1.#ind',
+]);
 const infinities = new Set(['inf', '+inf', '-inf', 'infinity', '+infinity', '-infinity', '∞', '+∞', '-∞']);
 
 /** Whether a cell says that its sample is missing. */

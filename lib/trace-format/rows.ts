@@ -58,7 +58,14 @@ export class RowReader {
       const lineStart = i;
       let byte = bytes[i] as number;
       while (byte === SPACE || (byte === TAB && (blanks || delimiter !== TAB))) byte = bytes[++i] as number;
-      if (byte === NEWLINE || byte === RETURN || byte === 35 || byte === 37 || byte === 47 || (byte === 59 && delimiter !== 59)) {
+      if (
+        byte === NEWLINE ||
+        byte === RETURN ||
+        byte === 35 ||
+        byte === 37 ||
+        byte === 47 ||
+        (byte === 59 && delimiter !== 59)
+      ) {
         const lineEnd = endOfLine(bytes, i, end);
         if (this.skipsLine(bytes, i, lineEnd, line)) {
           i = lineEnd + 1;
@@ -128,8 +135,7 @@ export class RowReader {
         }
         const numberEnd = i;
         while (byte === SPACE || (blanks && byte === TAB)) byte = bytes[++i] as number;
-        const closed =
-          byte === NEWLINE || byte === RETURN || (blanks ? i > numberEnd : byte === delimiter);
+        const closed = byte === NEWLINE || byte === RETURN || (blanks ? i > numberEnd : byte === delimiter);
 
         let value: number;
         if (closed && digits > 0 && mantissa <= 9007199254740991 && power >= -22 && power <= 22) {
@@ -221,12 +227,16 @@ export class RowReader {
       parseNumber(text, other) !== null
         ? ` The file was read with a decimal ${decimal === '.' ? 'point' : 'comma'}, and this number has the other mark.`
         : '';
-    this.fail(line, `holds "${shown}" in column ${column + 1} (${(columns[column] as { header: string }).header}), which is not a number.${hint}`);
+    this.fail(
+      line,
+      `holds "${shown}" in column ${column + 1} (${(columns[column] as { header: string }).header}), which is not a number.${hint}`,
+    );
   }
 
   private refuseRagged(bytes: Uint8Array, line: number, found: number): never {
     const expected = this.block.length;
-    if (this.decode(bytes, line).includes('\0')) this.fail(line, 'holds a NUL byte: the file is damaged or is no text.');
+    if (this.decode(bytes, line).includes('\0'))
+      this.fail(line, 'holds a NUL byte: the file is damaged or is no text.');
     const count = `${found} ${found === 1 ? 'column' : 'columns'}`;
     throw new TraceFormatError(
       `Line ${line} has ${count} where the others have ${expected}. Correct it and attach the file again.`,

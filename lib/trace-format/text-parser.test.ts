@@ -41,7 +41,8 @@ describe('awkward instrument files, against their expected parse', () => {
     if (expected.units) expect(trace.columns.map(({ unit }) => unit)).toEqual(expected.units);
     if (expected.n_rows) expect(trace.rows).toBe(expected.n_rows);
     if (expected.comment_lines) expect(trace.comments).toHaveLength(expected.comment_lines);
-    if (expected.missing_per_column) expect(trace.columns.map(({ missing }) => missing)).toEqual(expected.missing_per_column);
+    if (expected.missing_per_column)
+      expect(trace.columns.map(({ missing }) => missing)).toEqual(expected.missing_per_column);
     const wanted = Object.entries(expected.columns ?? {});
     wanted.forEach(([name, values], i) => {
       expect(list(columns[i]).map((value) => (Number.isNaN(value) ? null : value))).toEqual(values);
@@ -96,7 +97,9 @@ describe('numbers', () => {
 
   it('keeps the halfway cases of binary64', () => {
     // 2^53 + 1 lies halfway between two doubles, IEEE 754-2019 4.3.1 ties to even; the second digit string is just above.
-    const { columns } = parse('a\n9007199254740993\n9007199254740993.00000000000000000001\n4.9406564584124654e-324\n2.2250738585072011e-308\n');
+    const { columns } = parse(
+      'a\n9007199254740993\n9007199254740993.00000000000000000001\n4.9406564584124654e-324\n2.2250738585072011e-308\n',
+    );
     expect(list(columns[0])).toEqual([9007199254740992, 9007199254740994, Number.MIN_VALUE, 2.2250738585072011e-308]);
   });
 
@@ -120,7 +123,10 @@ describe('layouts', () => {
       expect(parser.finish()).toEqual(whole.trace);
       expect(collector.result()).toEqual(whole.columns);
     }
-    expect(whole.trace.columns.map(({ name, unit }) => [name, unit])).toEqual([['t', 's'], ['I', 'pA']]);
+    expect(whole.trace.columns.map(({ name, unit }) => [name, unit])).toEqual([
+      ['t', 's'],
+      ['I', 'pA'],
+    ]);
     expect(whole.trace.comments).toEqual(['# made up', '# pause']);
   });
 
@@ -147,9 +153,15 @@ describe('layouts', () => {
   });
 
   it('keeps a preamble, a trailing delimiter, quoted cells and words', () => {
-    const { trace, columns } = parse('Lock-in run 7\nStarted;2031-02-10\n\nt (s);state;I (pA);\n"0,5";idle;1;\n1,5;on;2;\n');
+    const { trace, columns } = parse(
+      'Lock-in run 7\nStarted;2031-02-10\n\nt (s);state;I (pA);\n"0,5";idle;1;\n1,5;on;2;\n',
+    );
     expect(trace.comments).toEqual(['Lock-in run 7', 'Started;2031-02-10']);
-    expect(trace.columns.map(({ name, text }) => [name, text])).toEqual([['t', false], ['state', true], ['I', false]]);
+    expect(trace.columns.map(({ name, text }) => [name, text])).toEqual([
+      ['t', false],
+      ['state', true],
+      ['I', false],
+    ]);
     expect(list(columns[0])).toEqual([0.5, 1.5]);
     expect(list(columns[2])).toEqual([1, 2]);
   });
@@ -185,7 +197,9 @@ describe('refusals', () => {
   ])('%j', (text, sentence) => expect(refusal(text)).toContain(sentence));
 
   it('names a picture and an archive', () => {
-    expect(refusal(Uint8Array.of(0x89, 0x50, 0x4e, 0x47, 0x0d, 0x0a, 0x1a, 0x0a, 0, 0, 0, 13))).toContain('a PNG picture');
+    expect(refusal(Uint8Array.of(0x89, 0x50, 0x4e, 0x47, 0x0d, 0x0a, 0x1a, 0x0a, 0, 0, 0, 13))).toContain(
+      'a PNG picture',
+    );
     expect(refusal(Uint8Array.of(0x50, 0x4b, 3, 4, 0, 0, 0, 0))).toContain('ZIP');
   });
 

@@ -43,7 +43,8 @@ export class TextTraceParser {
     if (chunk.length === 0) return;
     this.total += chunk.length;
     if (this.reader) return this.readLines(this.widen(chunk, false));
-    this.carry = this.carry.length === 0 ? chunk.slice() : concat(this.carry, this.started ? this.widen(chunk, false) : chunk);
+    this.carry =
+      this.carry.length === 0 ? chunk.slice() : concat(this.carry, this.started ? this.widen(chunk, false) : chunk);
     if (!this.started) {
       if (this.carry.length < 16) return;
       this.start();
@@ -56,7 +57,8 @@ export class TextTraceParser {
   }
 
   finish(): ParsedTrace {
-    if (this.total === 0) throw new TraceFormatError('The file is empty: it has no bytes. Attach the file that holds the samples.');
+    if (this.total === 0)
+      throw new TraceFormatError('The file is empty: it has no bytes. Attach the file that holds the samples.');
     if (!this.started) this.start();
     const tail = this.widen(new Uint8Array(0), true);
     if (tail.length > 0) {
@@ -135,7 +137,7 @@ export class TextTraceParser {
     const end = atEnd ? bytes.length : bytes.lastIndexOf(NEWLINE) + 1;
     const lines: string[] = [];
     const starts: number[] = [];
-    for (let from = 0; from < end; ) {
+    for (let from = 0; from < end;) {
       const at = bytes.indexOf(NEWLINE, from);
       const to = at < 0 || at >= end ? end : at;
       starts.push(from);
@@ -145,7 +147,10 @@ export class TextTraceParser {
     const layout = end > 0 ? decideLayout(lines) : null;
     if (!layout) {
       this.notUtf8.length = 0;
-      if (atEnd) throw new TraceFormatError('The file holds no line of numbers. Its bytes are kept; attach the file that holds the samples.');
+      if (atEnd)
+        throw new TraceFormatError(
+          'The file holds no line of numbers. Its bytes are kept; attach the file that holds the samples.',
+        );
       if (bytes.length < patience) return;
       throw new TraceFormatError(
         end === 0
@@ -174,7 +179,10 @@ export class TextTraceParser {
     if (end === 0) {
       this.carry = concat(this.carry, chunk);
       if (this.carry.length > patience) {
-        throw new TraceFormatError(`Line ${reader.nextLine} is longer than 1 MiB, which no table of samples has.`, reader.nextLine);
+        throw new TraceFormatError(
+          `Line ${reader.nextLine} is longer than 1 MiB, which no table of samples has.`,
+          reader.nextLine,
+        );
       }
       return;
     }
@@ -242,6 +250,7 @@ export function parseTextTrace(bytes: Uint8Array): { trace: ParsedTrace; columns
   const collector = new ColumnCollector();
   const parser = new TextTraceParser(collector.sink);
   const step = 1 << 20;
-  for (let from = 0; from < bytes.length; from += step) parser.push(bytes.subarray(from, Math.min(bytes.length, from + step)));
+  for (let from = 0; from < bytes.length; from += step)
+    parser.push(bytes.subarray(from, Math.min(bytes.length, from + step)));
   return { trace: parser.finish(), columns: collector.result() };
 }
