@@ -10,5 +10,21 @@ export default {
   reactStrictMode: true,
   outputFileTracingRoot: path.resolve('.'),
   outputFileTracingExcludes: { '*': ['./data/**', './tests/**', './dist/**'] },
+  // Pages carry the nonce policy of proxy.ts; these hold for everything.
+  async headers() {
+    return [
+      {
+        source: '/:path*',
+        headers: [
+          { key: 'x-content-type-options', value: 'nosniff' },
+          { key: 'referrer-policy', value: 'same-origin' },
+          { key: 'x-frame-options', value: 'DENY' },
+          { key: 'cross-origin-opener-policy', value: 'same-origin' },
+          { key: 'cross-origin-resource-policy', value: 'same-origin' },
+          { key: 'permissions-policy', value: 'geolocation=(), microphone=(), camera=(), payment=(), usb=()' },
+        ],
+      },
+    ];
+  },
   experimental: { serverActions: { bodySizeLimit: '4mb' } },
 };

@@ -4,6 +4,7 @@ import { AppError, errorBody } from '@/lib/errors/app-error';
 import { report } from '@/server/diagnostics/report';
 import { env } from '@/server/env/env';
 import { readJsonBody } from './body';
+import { inFlight } from './in-flight';
 import { refuseCrossSite } from './origin';
 import { findPerson } from './person';
 import type { Action } from './rights';
@@ -36,21 +37,25 @@ export function withAccess<A extends Action, B = undefined, Q = undefined>(
   spec: Spec<A, B, Q>,
   handler: (call: Call<A, B, Q>) => Promise<Response | object | null>,
 ) {
+  const answer = async (request: Request, context: RouteContext): Promise<Response> => {
+    refuseCrossSite(request);
+    const params = Object.fromEntries(
+      Object.entries(await context.params).map(([key, value]) => [key, Array.isArray(value) ? value.join('/') : value]),
+    );
+    const person = await findPerson(request.headers);
+    const scope = await authorise(spec.action, person, params[spec.param ?? 'id'] ?? params.code ?? null);
+    const query = spec.query ? parse(spec.query, Object.fromEntries(new URL(request.url).searchParams)) : undefined;
+    const body = spec.body ? parse(spec.body, await readJsonBody(request, spec.maxBytes ?? 1_000_000)) : undefined;
+    const result = await handler({ request, params, scope, body: body as B, query: query as Q });
+    return result instanceof Response ? result : send(200, result ?? {});
+  };
   const route = async (request: Request, context: RouteContext): Promise<Response> => {
     try {
-      refuseCrossSite(request);
-      const params = Object.fromEntries(
-        Object.entries(await context.params).map(([key, value]) => [key, Array.isArray(value) ? value.join('/') : value]),
-      );
-      const person = await findPerson(request.headers);
-      const scope = await authorise(spec.action, person, params[spec.param ?? 'id'] ?? params.code ?? null);
-      const query = spec.query ? parse(spec.query, Object.fromEntries(new URL(request.url).searchParams)) : undefined;
-      const body = spec.body ? parse(spec.body, await readJsonBody(request, spec.maxBytes ?? 1_000_000)) : undefined;
-      const result = await handler({ request, params, scope, body: body as B, query: query as Q });
-      return result instanceof Response ? result : send(200, result ?? {});
+      return await inFlight(() => answer(request, context));
     } catch (error) {
       const refused = toAppError(error);
-      if (refused.status >= 500) report('request failed', { method: request.method, path: new URL(request.url).pathname }, error);
+      if (refused.status >= 500)
+        report('request failed', { method: request.method, path: new URL(request.url).pathname }, error);
       return send(refused.status, errorBody(refused));
     }
   };
