@@ -134,14 +134,15 @@ async function readFilePart(
       resolve();
     });
   });
+  let writeFailed = false;
   parser.on('file', (_name, stream: Readable) => {
     files += 1;
     writing = (async () => {
       for await (const chunk of stream) await take(chunk as Uint8Array);
     })();
     writing.catch((error: unknown) => {
+      writeFailed = true;
       fail(error);
-      stream.resume();
     });
   });
 
@@ -158,10 +159,14 @@ async function readFilePart(
   } catch (error) {
     fail(error instanceof ServiceRefusal ? error : new ServiceRefusal(400, 'The connection broke off. What arrived is kept; resume the upload.'));
   }
-  if (failure !== null) reader.cancel().catch(() => undefined /* the sender is gone already */);
-  parser.end();
-  await closed;
-  await writing.catch(fail);
+  // The rest of the body is not read: the answer to a refusal closes the connection.
+  if (writeFailed) {
+    parser.destroy();
+  } else {
+    parser.end();
+    await closed;
+    await writing.catch(fail);
+  }
   if (failure !== null) throw failure;
   if (files === 0) throw new ServiceRefusal(400, 'The form holds no file.');
 }

@@ -20,7 +20,8 @@ export async function handleUploadService(request: Request, config: UploadServic
   try {
     return await dispatch(request, config);
   } catch (error) {
-    if (error instanceof ServiceRefusal) return json({ error: error.message }, error.status);
+    // A refused body may go on for gigabytes: the connection is closed instead of reading it to its end.
+    if (error instanceof ServiceRefusal) return json({ error: error.message }, error.status, request.method === 'PUT');
     console.error('upload service:', error instanceof Error ? error.message : error);
     return json({ error: 'The upload service failed. What arrived is kept; try again.' }, 500);
   }
@@ -244,4 +245,11 @@ async function callBack(config: UploadServiceConfig, store: UploadStore, record:
     if (Date.now() > until) throw new ServiceRefusal(502, failed);
     await new Promise((resolve) => setTimeout(resolve, 25));
   }
+}
+
+function json(body: object, status = 200, close = false): Response {
+  return Response.json(body, {
+    status,
+    headers: { 'cache-control': 'no-store', 'x-content-type-options': 'nosniff', ...(close ? { connection: 'close' } : {}) },
+  });
 }
