@@ -17,7 +17,8 @@ export async function serveOnLoopback(
     handler(request, origin)
       .then(async (response) => {
         outgoing.writeHead(response.status, Object.fromEntries(response.headers));
-        if (response.body && method !== 'HEAD') for await (const chunk of response.body) outgoing.write(chunk);
+        const reader = method === 'HEAD' ? null : response.body?.getReader();
+        for (let part = await reader?.read(); part && !part.done; part = await reader?.read()) outgoing.write(part.value);
         outgoing.end();
       })
       .catch((error: unknown) => outgoing.destroy(error instanceof Error ? error : new Error(String(error))));

@@ -32,7 +32,7 @@ const appId = 'kelvinleaf';
 export async function startTrial(given: Partial<UploadServiceConfig> & { dataDir?: string } = {}) {
   const dataDir = given.dataDir ?? (await mkdtemp(path.join(tmpdir(), 'uploads-')));
   const received: Received[] = [];
-  let answer: () => object = () => ({ taken: true });
+  let answer: () => { [key: string]: string | boolean } = () => ({ taken: true });
   let config: UploadServiceConfig | null = null;
   let route: ((request: Request) => Promise<Response>) | null = null;
   let utapi: UTApi | null = null;
@@ -54,7 +54,7 @@ export async function startTrial(given: Partial<UploadServiceConfig> & { dataDir
     utapi = new UTApi({ ...sdk, ...{ ufsHost: baseUrl.replace('http://', ''), ufsAppIdLocation: 'path' } });
     const api = utapi;
     const router = {
-      trace: f({ blob: { maxFileSize: '256MB', maxFileCount: 10 } }, { getFileHashParts: (file) => [file.customId, file.name, file.size], awaitServerData: true })
+      trace: f({ blob: { maxFileSize: '256MB', maxFileCount: 10 } }, { getFileHashParts: (file: { customId?: string | null; name: string; size: number }) => [file.customId, file.name, file.size], awaitServerData: true })
         .middleware(({ files }) => ({ [UTFiles]: files.map((file) => ({ ...file, customId: `custom-${file.name}` })) }))
         .onUploadComplete(async ({ file }) => {
           const { ufsUrl } = await api.generateSignedURL(file.key, { expiresIn: 60 });
@@ -75,7 +75,7 @@ export async function startTrial(given: Partial<UploadServiceConfig> & { dataDir
     base: `${server.origin}/api/local-uploads`,
     apiKey,
     utapi: utapi as unknown as UTApi,
-    answerWith: (next: () => object) => {
+    answerWith: (next: typeof answer) => {
       answer = next;
     },
     /** Asks our route for the address of an upload, as the browser does. */
