@@ -9,6 +9,7 @@ import { leave } from './leave';
 import { logLineWithView } from './log-line/extension';
 import { paste } from './paste';
 import { pictureWithView } from './picture/extension';
+import { questionSlots } from './question-slots';
 import { stamps } from './stamps';
 import { traceWithView } from './trace/extension';
 import { valueWithView } from './value/extension';
@@ -24,7 +25,7 @@ const views: Extensions = [
 ];
 
 /** The document with its views, read-only. */
-export const readingExtensions: Extensions = [...textExtensions, ...views, stamps];
+export const readingExtensions: Extensions = [...textExtensions, ...views, stamps, questionSlots];
 
 /** The document with its views and everything that writes. */
 export function writingExtensions(host: EditorHost): Extensions {

@@ -1,0 +1,103 @@
+'use client';
+
+import type { Editor } from '@tiptap/core';
+import type { Node as ProseMirrorNode } from '@tiptap/pm/model';
+import Link from 'next/link';
+import type { ReactNode } from 'react';
+import type { TraceNodeAttributes } from '@/lib/document/attributes';
+import type { BlockStamps, EntryDto } from '@/lib/schemas/entry';
+import { useResult, useSheet, useTrace, type Focus } from '@/components/editor/sheet-context/context';
+import { BlockProvenance } from './block-provenance';
+import { TraceProvenance } from './trace-provenance';
+import { ValueProvenance } from './value-provenance';
+
+type Props = {
+  entry: EntryDto;
+  editor: Editor | null;
+  stamps: BlockStamps;
+  written: Record<string, string>;
+  names: Record<string, string>;
+  children?: ReactNode;
+};
+
+/** The column at the right that follows the cursor: a value, a trace, or the block it stands in. */
+export function ProvenanceColumn({ entry, editor, stamps, written, names, children }: Props) {
+  const { focus } = useSheet();
+  return (
+    <aside className="provenance" aria-label="Provenance">
+      {focus?.kind === 'value' ? <OfValue editor={editor} focus={focus} /> : null}
+      {focus?.kind === 'trace' ? <OfTrace editor={editor} focus={focus} /> : null}
+      {focus?.blockId ? (
+        <BlockProvenance stamp={stamps[focus.blockId]} written={written[focus.blockId]} names={names} />
+      ) : null}
+      {!focus ? <p className="text-quiet">Choose a value, a trace or a paragraph to see where it comes from.</p> : null}
+      <ToCountersign entry={entry} />
+      {children}
+    </aside>
+  );
+}
+
+export function nodeById(editor: Editor | null, id: string): ProseMirrorNode | null {
+  let found: ProseMirrorNode | null = null;
+  editor?.state.doc.descendants((node) => {
+    if (node.attrs.id === id) found = node;
+    return found === null && !node.isAtom;
+  });
+  return found;
+}
+
+function OfValue({ editor, focus }: { editor: Editor | null; focus: Focus }) {
+  const { store, setFocus } = useSheet();
+  const result = useResult(focus.id);
+  const node = nodeById(editor, focus.id);
+  const source = String(node?.attrs.source ?? focus.quote);
+  if (!result)
+    return <p className="text-quiet">{source === '' ? 'An empty value.' : 'This value has no result yet.'}</p>;
+  const jump = (symbol: string) => {
+    const stem = symbol.split('.')[0];
+    const definition = store.results().find((other) => other.symbol === symbol);
+    let traceId: string | null = null;
+    editor?.state.doc.forEach((block) => {
+      if (block.type.name === 'trace' && block.attrs.handle === stem) traceId = String(block.attrs.id);
+    });
+    const id = definition?.id ?? traceId;
+    if (!id) return;
+    setFocus({ kind: definition ? 'value' : 'trace', id, blockId: definition ? null : traceId, quote: symbol });
+    editor?.view.dom.querySelector(`[data-id="${CSS.escape(id)}"]`)?.scrollIntoView({ block: 'nearest' });
+  };
+  return <ValueProvenance result={result} source={source} onJump={jump} />;
+}
+
+function OfTrace({ editor, focus }: { editor: Editor | null; focus: Focus }) {
+  const node = nodeById(editor, focus.id);
+  const file = useTrace(String(node?.attrs.traceId ?? ''));
+  if (!node) return null;
+  return <TraceProvenance node={node.attrs as TraceNodeAttributes} file={file} />;
+}
+
+function ToCountersign({ entry }: { entry: EntryDto }) {
+  const waits = entry.state === 'signed' && (entry.may.countersign || entry.countersignObstacle !== null);
+  if (!waits && !entry.may.sign) return null;
+  return (
+    <section>
+      <h2>{waits ? 'To countersign' : 'To sign'}</h2>
+      {waits ? (
+        <p>
+          {entry.seen.traces} of {entry.seen.of} {entry.seen.of === 1 ? 'trace' : 'traces'} seen.
+        </p>
+      ) : null}
+      {waits && entry.countersignObstacle ? <p>{entry.countersignObstacle}</p> : null}
+      {!waits && entry.late ? (
+        <p>
+          The work was {entry.late.days} days ago; the laboratory’s limit is {entry.late.limit}. Signing asks for the
+          reason.
+        </p>
+      ) : null}
+      {(waits && !entry.countersignObstacle) || (!waits && entry.may.sign) ? (
+        <Link className="press press-main" href={`/entries/${entry.id}/sign`}>
+          {waits ? 'Countersign' : 'Sign'}
+        </Link>
+      ) : null}
+    </section>
+  );
+}
