@@ -323,3 +323,13 @@ export async function noteServed(personId: string, about: typeof entry.$inferSel
     .where(and(eq(entryVersion.entryId, about.id), eq(entryVersion.seq, about.headSeq)));
   await db.insert(traceServed).values({ versionDigest: version.digest, traceId, userId: personId, servedAt: new Date() }).onConflictDoNothing();
 }
+
+export async function readObstacle(scope: ScopeOf<'entry.countersign'>): Promise<string | null> {
+  return countersignObstacle(await getDb(), scope.entry, scope.person.id);
+}
+
+/** Revision of the draft that a version would be cut from. */
+export async function readRevision(entryId: string): Promise<number> {
+  const [draft] = await (await getDb()).select({ revision: entryDraft.revision }).from(entryDraft).where(eq(entryDraft.entryId, entryId));
+  return draft.revision;
+}
