@@ -5,6 +5,7 @@ import { Dialog } from 'radix-ui';
 import { useEffect, useId, useMemo, useRef, useState } from 'react';
 import { request } from '@/components/hooks/request';
 import { useCommands, type Command } from './command-context';
+import './commands.css';
 import { KeyList } from './key-list';
 
 type Found = { kind: 'entry' | 'notebook' | 'device' | 'cooldown'; title: string; detail: string; href: string };

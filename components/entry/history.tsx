@@ -8,6 +8,7 @@ import type { DraftDto, VersionContentDto, VersionDto } from '@/lib/schemas/entr
 import { ErrorSentence } from '@/components/ui/sentence';
 import { request } from '@/components/hooks/request';
 import { MarkedText } from './compare';
+import './entry.css';
 
 type Props = { entryId: string; versions: VersionDto[]; mayRestore: boolean };
 

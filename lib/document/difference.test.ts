@@ -36,7 +36,7 @@ describe('documentDifference', () => {
       block(doc, 'values_1').content![1]!.attrs!.shown = '210 kHz';
     });
     expect(of(difference, 'values_1').values).toEqual([
-      { about: 'f', before: 'f = 200 kHz exactly → 200 kHz', after: 'f = 210 kHz exactly → 210 kHz' },
+      { about: 'f', before: 'f = 200 kHz exactly → 200\u2009kHz', after: 'f = 210 kHz exactly → 210 kHz' },
     ]);
     expect(difference.counts.changed).toBe(1);
   });

@@ -75,7 +75,7 @@ export function sampleDocument(): DocumentJson {
           text('Drive at '),
           {
             type: 'value',
-            attrs: { id: 'value_f_01', source: 'f = 200 kHz exactly', unit: null, digits: null, shown: '200 kHz' },
+            attrs: { id: 'value_f_01', source: 'f = 200 kHz exactly', unit: null, digits: null, shown: '200\u2009kHz' },
           },
           text('.'),
         ],

@@ -1,8 +1,9 @@
 'use client';
 
 import { NodeViewWrapper, type ReactNodeViewProps } from '@tiptap/react';
-import { useEffect, useId, useRef, useState } from 'react';
+import { useId, useRef, useState } from 'react';
 import { useOpening } from '@/components/editor/opening';
+import { useFieldFocus } from '@/components/editor/use-field-focus';
 import { useSheet } from '@/components/editor/sheet-context/context';
 import { Typeset } from './typeset';
 
@@ -49,7 +50,7 @@ function TexField({ tex, display, onDone }: { tex: string; display: boolean; onD
   const field = useRef<HTMLTextAreaElement>(null);
   const done = useRef(false);
   const hint = useId();
-  useEffect(() => field.current?.focus(), []);
+  const ready = useFieldFocus(field);
   const finish = (next: string) => {
     if (done.current) return;
     done.current = true;
@@ -78,7 +79,9 @@ function TexField({ tex, display, onDone }: { tex: string; display: boolean; onD
             finish(text);
           }
         }}
-        onBlur={() => finish(text)}
+        onBlur={() => {
+          if (ready.current) finish(text);
+        }}
       />
       <span id={hint} className="text-quiet">
         {display ? 'Ctrl+Enter keeps it, Escape goes back.' : 'Enter keeps it, Escape goes back.'}

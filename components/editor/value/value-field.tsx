@@ -1,6 +1,7 @@
 'use client';
 
 import { useEffect, useId, useRef, useState } from 'react';
+import { useFieldFocus } from '@/components/editor/use-field-focus';
 import { useResult, useSheet } from '@/components/editor/sheet-context/context';
 
 type Draft = { source: string; unit: string | null; digits: number | null };
@@ -16,11 +17,8 @@ export function ValueField({ id, source, unit, digits, onCommit, onLeave }: Prop
   const done = useRef(false);
   const noteId = useId();
 
-  useEffect(() => {
-    line.current?.focus();
-    line.current?.select();
-    return () => store.setPreview(id, null);
-  }, [store, id]);
+  const ready = useFieldFocus(line);
+  useEffect(() => () => store.setPreview(id, null), [store, id]);
 
   const finish = (act: () => void) => {
     if (done.current) return;
@@ -45,7 +43,7 @@ export function ValueField({ id, source, unit, digits, onCommit, onLeave }: Prop
         }
       }}
       onBlur={(event) => {
-        if (!box.current?.contains(event.relatedTarget)) finish(() => onCommit(draft));
+        if (ready.current && !box.current?.contains(event.relatedTarget)) finish(() => onCommit(draft));
       }}
     >
       <input

@@ -1,0 +1,31 @@
+'use client';
+
+import type { DraftDto, EntryDto, PersonDto, VersionContentDto } from '@/lib/schemas/entry';
+import '@/components/commands/commands.css';
+import './entry.css';
+import { ReadingSheet } from './reading-sheet';
+import { WritingSheet } from './writing-sheet';
+
+export type EntrySheetProps = {
+  entry: EntryDto;
+  /** Given to whoever may write now; else null. */
+  draft: DraftDto | null;
+  /** What is read when there is no draft to write: the head version, or an older one. */
+  version: VersionContentDto | null;
+  person: PersonDto;
+  /** Build id of the page, as in the header x-kelvinleaf-build. */
+  build: string;
+};
+
+/** The sheet of an entry: written by who may, else read as the version has bound it. */
+export function EntrySheet({ entry, draft, version, person, build }: EntrySheetProps) {
+  if (draft && entry.may.write)
+    return <WritingSheet key={draft.entryId} entry={entry} draft={draft} person={person} build={build} />;
+  if (version) return <ReadingSheet key={version.id} entry={entry} version={version} person={person} />;
+  return (
+    <p className="entry-empty">
+      {entry.notebook.code} leaf {entry.leaf}: nothing to read yet. {entry.author.name} has not cut a version of this
+      entry.
+    </p>
+  );
+}
