@@ -11,6 +11,7 @@ import { getDb } from '@/server/db/client';
 import { user } from '@/server/db/schema/people';
 import { report } from '@/server/diagnostics/report';
 import { env } from '@/server/env/env';
+import { enqueueJob } from '@/server/jobs/service';
 import { appendLog } from '@/server/log/service';
 import { blobHead, hasBlob, storeBlob, sweepBlobs } from './blobs';
 import { readFacts, ingestBlob, type IngestLimits } from './ingest';
@@ -66,7 +67,20 @@ export async function receiveFile(file: ReceivedFile): Promise<UploadOutcome> {
   const { kind, notebookId, entryId, personId, uploadId, fileName, bytes, sha256 } = file;
   const state = kind === 'picture' ? ('parsed' as const) : ('received' as const);
   const isNew = await db.transaction(async (tx) => {
-    const row = { id, notebookId, entryId, kind, fileName, mediaType, bytes, sha256, state, uploadId, uploadedBy: personId, receivedAt: now() };
+    const row = {
+      id,
+      notebookId,
+      entryId,
+      kind,
+      fileName,
+      mediaType,
+      bytes,
+      sha256,
+      state,
+      uploadId,
+      uploadedBy: personId,
+      receivedAt: now(),
+    };
     if (!(await queries.insertTrace(tx, row))) return false;
     await appendLog(tx, {
       kind: 'trace received',
@@ -75,15 +89,18 @@ export async function receiveFile(file: ReceivedFile): Promise<UploadOutcome> {
       entryId,
       detail: { traceId: id, kind, fileName, bytes, sha256 },
     });
+    // The job does it should this process end first; reading twice does no harm.
+    if (kind === 'trace') await enqueueJob(tx, 'ingest trace', `ingest trace ${id}`, { traceId: id });
     return true;
   });
   if (!isNew) {
     const first = await queries.findUpload(db, file);
-    if (!first) throw new AppError('conflict', 'This upload was recorded and is gone again. Attach the file once more.');
+    if (!first)
+      throw new AppError('conflict', 'This upload was recorded and is gone again. Attach the file once more.');
     return { traceId: first.id, state: first.state };
   }
   if (kind === 'picture') return { traceId: id, state };
-  const reading = ingestTrace(id).catch((error: unknown) => {
+  const reading = readReceived(id).catch((error: unknown) => {
     report('a received file could not be read', { traceId: id }, error);
     return 'received' as const;
   });
@@ -97,7 +114,11 @@ function later<T>(value: T): Promise<T> {
 /**
  * Parses the file of a trace and records its columns, or a sentence why it cannot be read. Doing it again changes nothing.
  */
-export async function ingestTrace(id: string, limits?: IngestLimits): Promise<'received' | 'parsed' | 'unreadable'> {
+export async function ingestTrace(id: string, limits?: IngestLimits): Promise<void> {
+  await readReceived(id, limits);
+}
+
+async function readReceived(id: string, limits?: IngestLimits): Promise<'received' | 'parsed' | 'unreadable'> {
   const db = await getDb();
   const row = await queries.findTrace(db, id);
   if (!row || row.state !== 'received') return row?.state ?? 'unreadable';
@@ -117,12 +138,17 @@ export async function ingestTrace(id: string, limits?: IngestLimits): Promise<'r
       minimum: column.min === null ? null : String(column.min),
       maximum: column.max === null ? null : String(column.max),
     }));
-    await queries.settleTrace(tx, id, { state: 'parsed', problem: null, rows: trace.rows, comments: trace.comments }, columns);
+    await queries.settleTrace(
+      tx,
+      id,
+      { state: 'parsed', problem: null, rows: trace.rows, comments: trace.comments },
+      columns,
+    );
   });
   return result.ok ? 'parsed' : 'unreadable';
 }
 
-/** At start-up: files that were received and not yet read are read, and what a crash left in the store is removed. */
+/** At start-up or in the hourly tidying: files that were received and not yet read are read, and what a crash left in the store is removed. */
 export async function settleTraces(): Promise<{ read: number; swept: number }> {
   const db = await getDb();
   let read = 0;
@@ -147,7 +173,8 @@ export type TraceDetail = TraceDto & {
 export async function traceDetail(id: string): Promise<TraceDetail> {
   const db = await getDb();
   const row = await queries.findTrace(db, id);
-  if (!row || row.kind !== 'trace') throw new AppError('not_found', 'There is nothing here, or it is not for you to see.');
+  if (!row || row.kind !== 'trace')
+    throw new AppError('not_found', 'There is nothing here, or it is not for you to see.');
   const columns = await queries.columnsOf(db, id);
   const [uploader] = await db.select({ name: user.name }).from(user).where(eq(user.id, row.uploadedBy));
   const facts = row.state === 'parsed' ? await readFacts(row.sha256) : null;
@@ -177,11 +204,17 @@ export async function traceDetail(id: string): Promise<TraceDetail> {
 }
 
 /** The stored file of a trace or picture, for serving. */
-export async function storedFile(id: string, kind: 'trace' | 'picture'): Promise<{ sha256: string; bytes: number; fileName: string; mediaType: string }> {
+export async function storedFile(
+  id: string,
+  kind: 'trace' | 'picture',
+): Promise<{ sha256: string; bytes: number; fileName: string; mediaType: string }> {
   const row = await queries.findTrace(await getDb(), id);
   if (!row || row.kind !== kind) throw new AppError('not_found', 'There is nothing here, or it is not for you to see.');
   if (!(await hasBlob(row.sha256))) {
-    throw new AppError('unavailable', `The bytes of "${row.fileName}" are missing from the data folder. Its record and digest are kept; restore the file from a backup.`);
+    throw new AppError(
+      'unavailable',
+      `The bytes of "${row.fileName}" are missing from the data folder. Its record and digest are kept; restore the file from a backup.`,
+    );
   }
   const { sha256, bytes, fileName, mediaType } = row;
   return { sha256, bytes, fileName, mediaType };
@@ -190,13 +223,19 @@ export async function storedFile(id: string, kind: 'trace' | 'picture'): Promise
 /** The digest that a parsed trace's columns are read by. */
 export async function parsedDigest(id: string): Promise<string> {
   const row = await queries.findTrace(await getDb(), id);
-  if (!row || row.kind !== 'trace') throw new AppError('not_found', 'There is nothing here, or it is not for you to see.');
-  if (row.state !== 'parsed') throw new AppError('conflict', row.problem ?? 'The file is still being read. Try again in a moment.');
+  if (!row || row.kind !== 'trace')
+    throw new AppError('not_found', 'There is nothing here, or it is not for you to see.');
+  if (row.state !== 'parsed')
+    throw new AppError('conflict', row.problem ?? 'The file is still being read. Try again in a moment.');
   return row.sha256;
 }
 
 /** Whether an upload of this person has arrived: asked before sending a file again whose answer was lost. */
-export async function receivedUpload(by: { personId: string; entryId: string; uploadId: string }): Promise<UploadOutcome | null> {
+export async function receivedUpload(by: {
+  personId: string;
+  entryId: string;
+  uploadId: string;
+}): Promise<UploadOutcome | null> {
   const row = await queries.findUpload(await getDb(), by);
   return row ? { traceId: row.id, state: row.state } : null;
 }
