@@ -39,15 +39,27 @@ const policies = [
   { from: { file: { categories: 'test' } }, allow: node },
   { from: { file: { categories: 'test' } }, allow: to('lib', 'components') },
   { from: { element: { types: { anyOf: ['foundation', 'noun'] } } }, allow: to('lib', 'db', 'foundation') },
-  { from: { element: { types: { anyOf: ['foundation', 'noun'] } } }, allow: { to: { element: { type: 'noun' }, file: { categories: 'service' } } } },
-  { from: { element: { type: 'noun' } }, allow: { to: { element: { type: 'noun', captured: { noun: '{{ from.element.captured.noun }}' } } } } },
-  { from: { element: { type: 'foundation', captured: { noun: 'mail' } } }, allow: { to: { element: { type: 'fakes', captured: { name: 'mailbox' } } } } },
+  {
+    from: { element: { types: { anyOf: ['foundation', 'noun'] } } },
+    allow: { to: { element: { type: 'noun' }, file: { categories: 'service' } } },
+  },
+  {
+    from: { element: { type: 'noun' } },
+    allow: { to: { element: { type: 'noun', captured: { noun: '{{ from.element.captured.noun }}' } } } },
+  },
+  {
+    from: { element: { type: 'foundation', captured: { noun: 'mail' } } },
+    allow: { to: { element: { type: 'fakes', captured: { name: 'mailbox' } } } },
+  },
   { from: { element: { type: 'app' } }, allow: to('app', 'components', 'lib', 'foundation') },
   { from: { element: { type: 'app' } }, allow: { to: { element: { type: 'noun' }, file: { categories: 'service' } } } },
   { from: { element: { type: 'app' } }, disallow: { to: { file: { categories: 'queries' } } } },
   { from: { element: { type: 'app' }, file: { categories: 'upload-route' } }, allow: to('fakes') },
   { from: { element: { type: 'fakes' } }, allow: to('fakes', 'lib') },
-  { from: { element: { type: 'tests' } }, allow: to('lib', 'components', 'db', 'foundation', 'noun', 'fakes', 'app', 'tests') },
+  {
+    from: { element: { type: 'tests' } },
+    allow: to('lib', 'components', 'db', 'foundation', 'noun', 'fakes', 'app', 'tests'),
+  },
 ];
 
 export default [
@@ -65,7 +77,15 @@ export default [
         { category: 'upload-route', pattern: 'app/api/local-uploads/**' },
         { category: 'test', pattern: '**/*.test.{ts,tsx}' },
       ],
-      'boundaries/ignore': ['*.{ts,js,mjs}', 'instrumentation.ts', 'proxy.ts', 'server/commands/*', 'server/start/*', 'tests/*.ts', '**/*.css'],
+      'boundaries/ignore': [
+        '*.{ts,js,mjs}',
+        'instrumentation.ts',
+        'proxy.ts',
+        'server/commands/*',
+        'server/start/*',
+        'tests/*.ts',
+        '**/*.css',
+      ],
       'import-x/resolver-next': [createTypeScriptImportResolver()],
       'import/resolver': { typescript: true },
     },
@@ -73,7 +93,10 @@ export default [
       'boundaries/dependencies': ['error', { default: 'disallow', checkAllOrigins: true, policies }],
       'boundaries/no-unknown-files': 'error',
       'import-x/no-cycle': ['error', { maxDepth: 8 }],
-      'no-restricted-imports': ['error', { patterns: [{ regex: '/index$', message: 'No barrels: import the file itself.' }] }],
+      'no-restricted-imports': [
+        'error',
+        { patterns: [{ regex: '/index$', message: 'No barrels: import the file itself.' }] },
+      ],
     },
   },
   {
@@ -93,7 +116,10 @@ export default [
     files: ['**/*.{ts,tsx}'],
     ignores: ['server/env/**', 'tests/**', 'proxy.ts', 'instrumentation.ts', '*.config.ts'],
     rules: {
-      'no-restricted-properties': ['error', { object: 'process', property: 'env', message: 'server/env is the only reader of the environment.' }],
+      'no-restricted-properties': [
+        'error',
+        { object: 'process', property: 'env', message: 'server/env is the only reader of the environment.' },
+      ],
     },
   },
 ];

@@ -15,13 +15,19 @@ export default async function BookLayout({ children }: { children: ReactNode }) 
       <a href="#content" className="sr-only focus:not-sr-only focus:absolute focus:z-50 focus:bg-sheet focus:p-3">
         Skip to the content
       </a>
-      <BookHeader person={toPersonDto(person)} waiting={await countWaiting(person.id)} administrator={person.role === 'administrator'} demo={env().demo} />
+      <BookHeader
+        person={toPersonDto(person)}
+        waiting={await countWaiting(person.id)}
+        administrator={person.role === 'administrator'}
+        demo={env().demo}
+      />
       <main id="content" tabIndex={-1} className="mx-auto max-w-[92rem] px-3 py-5 outline-none sm:px-6">
         {children}
       </main>
       {env().demo ? (
         <footer className="mx-auto max-w-[92rem] px-3 py-6 text-sm text-quiet sm:px-6">
-          Demonstration with invented data: the group, its people, devices and traces do not exist. <Link href="/mailbox">Local mailbox</Link>
+          Demonstration with invented data: the group, its people, devices and traces do not exist.{' '}
+          <Link href="/mailbox">Local mailbox</Link>
         </footer>
       ) : null}
     </>

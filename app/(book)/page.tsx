@@ -12,7 +12,12 @@ export default async function TodayPage() {
   const { person } = await pageAccess('self', null, '/');
   const today = await readToday(person.id);
   const writable = (await listNotebooks(person.id)).filter((book) => book.role === 'lead' || book.role === 'author');
-  const date = new Intl.DateTimeFormat('en-GB', { weekday: 'long', day: 'numeric', month: 'long', year: 'numeric' }).format(new Date());
+  const date = new Intl.DateTimeFormat('en-GB', {
+    weekday: 'long',
+    day: 'numeric',
+    month: 'long',
+    year: 'numeric',
+  }).format(new Date());
   return (
     <>
       <div className="mb-6 flex flex-wrap items-end justify-between gap-4">
@@ -21,7 +26,10 @@ export default async function TodayPage() {
           <p className="text-quiet">{date}</p>
         </div>
         {writable.length > 0 ? (
-          <Link href={writable.length === 1 ? `/notebooks/${writable[0].code}/new` : '/new-entry'} className="press press-main">
+          <Link
+            href={writable.length === 1 ? `/notebooks/${writable[0].code}/new` : '/new-entry'}
+            className="press press-main"
+          >
             New entry
           </Link>
         ) : null}
@@ -37,7 +45,12 @@ export default async function TodayPage() {
         </Section>
         <Section title="Waiting for a countersignature of yours" empty="Nothing waits for you.">
           {today.queue.map((line) => (
-            <Line key={line.id} href={`/entries/${line.id}`} place={`${line.notebook} leaf ${line.leaf}`} title={line.title}>
+            <Line
+              key={line.id}
+              href={`/entries/${line.id}`}
+              place={`${line.notebook} leaf ${line.leaf}`}
+              title={line.title}
+            >
               by {line.author.name}, {line.asked ? 'you were asked' : 'anyone who took no part'}
               {line.openQuestions > 0 ? `, ${line.openQuestions} open` : ''}
             </Line>
@@ -45,7 +58,12 @@ export default async function TodayPage() {
         </Section>
         <Section title="My drafts" empty="No draft of yours is open.">
           {today.drafts.map((draft) => (
-            <Line key={draft.id} href={`/entries/${draft.id}`} place={`${draft.notebook} leaf ${draft.leaf}`} title={draft.title}>
+            <Line
+              key={draft.id}
+              href={`/entries/${draft.id}`}
+              place={`${draft.notebook} leaf ${draft.leaf}`}
+              title={draft.title}
+            >
               work of <span className="figures">{draft.workDate}</span> <Stair state="draft" short />
             </Line>
           ))}
@@ -61,7 +79,12 @@ export default async function TodayPage() {
         {today.unsigned.length > 0 ? (
           <Section title="Unsigned work in notebooks you lead, oldest first" empty="">
             {today.unsigned.map((line) => (
-              <Line key={line.id} href={`/entries/${line.id}`} place={`${line.notebook} leaf ${line.leaf}`} title={line.title}>
+              <Line
+                key={line.id}
+                href={`/entries/${line.id}`}
+                place={`${line.notebook} leaf ${line.leaf}`}
+                title={line.title}
+              >
                 {line.author}, <span className="figures">{line.days}</span> {line.days === 1 ? 'day' : 'days'} old
               </Line>
             ))}

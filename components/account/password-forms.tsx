@@ -7,7 +7,12 @@ const passwordHint = '8 to 128 characters; several words are easy to keep in min
 
 export function ForgottenForm() {
   return (
-    <ActionForm method="POST" url="/api/auth/forgotten" submit="Send the link" done={(answer) => String(answer.sentence)}>
+    <ActionForm
+      method="POST"
+      url="/api/auth/forgotten"
+      submit="Send the link"
+      done={(answer) => String(answer.sentence)}
+    >
       <Field label="E-mail address" name="email" type="email" autoComplete="username" required />
     </ActionForm>
   );
@@ -22,7 +27,14 @@ export function ResetForm({ token }: { token: string }) {
       toBody={(form) => ({ token, password: form.get('password') })}
       done={() => ({ go: '/sign-in' })}
     >
-      <Field label="New password" name="password" type="password" autoComplete="new-password" hint={passwordHint} required />
+      <Field
+        label="New password"
+        name="password"
+        type="password"
+        autoComplete="new-password"
+        hint={passwordHint}
+        required
+      />
     </ActionForm>
   );
 }
@@ -33,21 +45,53 @@ export function JoinForm({ token, name, askEmail }: { token: string; name: strin
       method="POST"
       url="/api/auth/join"
       submit="Join"
-      toBody={(form) => ({ token, name: form.get('name'), password: form.get('password'), ...(askEmail ? { email: form.get('email') } : {}) })}
+      toBody={(form) => ({
+        token,
+        name: form.get('name'),
+        password: form.get('password'),
+        ...(askEmail ? { email: form.get('email') } : {}),
+      })}
       done={() => ({ go: '/' })}
     >
-      <Field label="Full name" name="name" defaultValue={name} autoComplete="name" hint="As it is printed with a signature." required />
+      <Field
+        label="Full name"
+        name="name"
+        defaultValue={name}
+        autoComplete="name"
+        hint="As it is printed with a signature."
+        required
+      />
       {askEmail ? <Field label="E-mail address" name="email" type="email" autoComplete="username" required /> : null}
-      <Field label="Password" name="password" type="password" autoComplete="new-password" hint={passwordHint} required />
+      <Field
+        label="Password"
+        name="password"
+        type="password"
+        autoComplete="new-password"
+        hint={passwordHint}
+        required
+      />
     </ActionForm>
   );
 }
 
 export function ChangePasswordForm() {
   return (
-    <ActionForm method="PUT" url="/api/account/password" submit="Change the password" reset done={() => 'The password is changed; every other device is signed out.'}>
+    <ActionForm
+      method="PUT"
+      url="/api/account/password"
+      submit="Change the password"
+      reset
+      done={() => 'The password is changed; every other device is signed out.'}
+    >
       <Field label="Present password" name="current" type="password" autoComplete="current-password" required />
-      <Field label="New password" name="next" type="password" autoComplete="new-password" hint={passwordHint} required />
+      <Field
+        label="New password"
+        name="next"
+        type="password"
+        autoComplete="new-password"
+        hint={passwordHint}
+        required
+      />
     </ActionForm>
   );
 }

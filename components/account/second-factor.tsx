@@ -11,7 +11,12 @@ export function SecondFactor({ on }: { on: boolean }) {
     return (
       <>
         <p className="mb-3">A code of your authenticator is asked for at every sign-in.</p>
-        <ActionForm method="DELETE" url="/api/account/second-factor" submit="Remove the second factor" done={() => ({ go: '/account' })}>
+        <ActionForm
+          method="DELETE"
+          url="/api/account/second-factor"
+          submit="Remove the second factor"
+          done={() => ({ go: '/account' })}
+        >
           <Field label="Password" name="password" type="password" autoComplete="current-password" required />
         </ActionForm>
       </>
@@ -38,7 +43,13 @@ export function SecondFactor({ on }: { on: boolean }) {
           </li>
           <li>Give the code that the authenticator shows:</li>
         </ol>
-        <ActionForm method="PUT" url="/api/account/second-factor" submit="Turn it on" done={() => ({ go: '/account' })} className="mt-3 space-y-4">
+        <ActionForm
+          method="PUT"
+          url="/api/account/second-factor"
+          submit="Turn it on"
+          done={() => ({ go: '/account' })}
+          className="mt-3 space-y-4"
+        >
           <Field label="Code" name="code" inputMode="numeric" autoComplete="one-time-code" required />
         </ActionForm>
       </>

@@ -8,7 +8,17 @@ import { ErrorSentence } from '@/components/ui/sentence';
 
 type Line = { id: string; label: string; note: string; current?: boolean };
 
-function EndableList({ lines, url, verb, empty }: { lines: Line[]; url: (id: string) => string; verb: string; empty: string }) {
+function EndableList({
+  lines,
+  url,
+  verb,
+  empty,
+}: {
+  lines: Line[];
+  url: (id: string) => string;
+  verb: string;
+  empty: string;
+}) {
   const [shown, setShown] = useState(lines);
   const [problem, setProblem] = useState<string | null>(null);
   const end = async (id: string) => {
@@ -44,14 +54,31 @@ function EndableList({ lines, url, verb, empty }: { lines: Line[]; url: (id: str
   );
 }
 
-export function Sessions({ sessions }: { sessions: { id: string; startedAt: string; userAgent: string; current: boolean }[] }) {
-  const lines = sessions.map((s) => ({ id: s.id, label: s.userAgent || 'unknown browser', note: `since ${s.startedAt.slice(0, 16).replace('T', ' ')} UTC`, current: s.current }));
+export function Sessions({
+  sessions,
+}: {
+  sessions: { id: string; startedAt: string; userAgent: string; current: boolean }[];
+}) {
+  const lines = sessions.map((s) => ({
+    id: s.id,
+    label: s.userAgent || 'unknown browser',
+    note: `since ${s.startedAt.slice(0, 16).replace('T', ' ')} UTC`,
+    current: s.current,
+  }));
   return <EndableList lines={lines} url={(id) => `/api/account/sessions/${id}`} verb="End" empty="No session." />;
 }
 
-export function Tokens({ tokens }: { tokens: { id: string; label: string; createdAt: string; lastUsedAt: string | null }[] }) {
+export function Tokens({
+  tokens,
+}: {
+  tokens: { id: string; label: string; createdAt: string; lastUsedAt: string | null }[];
+}) {
   const [secret, setSecret] = useState<string | null>(null);
-  const lines = tokens.map((t) => ({ id: t.id, label: t.label, note: `made ${t.createdAt.slice(0, 10)}, ${t.lastUsedAt ? `last used ${t.lastUsedAt.slice(0, 10)}` : 'not used yet'}` }));
+  const lines = tokens.map((t) => ({
+    id: t.id,
+    label: t.label,
+    note: `made ${t.createdAt.slice(0, 10)}, ${t.lastUsedAt ? `last used ${t.lastUsedAt.slice(0, 10)}` : 'not used yet'}`,
+  }));
   return (
     <div className="max-w-xl">
       <p className="mb-3 text-quiet">A token has your rights to read and to attach, and never signs.</p>

@@ -19,7 +19,10 @@ export function SignInForm({ to }: { to: string }) {
     setProblem(null);
     try {
       if (step === 'password') {
-        const answer = await request<{ secondFactor: boolean }>('POST', '/api/auth/sign-in', { email: form.get('email'), password: form.get('password') });
+        const answer = await request<{ secondFactor: boolean }>('POST', '/api/auth/sign-in', {
+          email: form.get('email'),
+          password: form.get('password'),
+        });
         if (answer.secondFactor) {
           setStep('code');
           return;

@@ -9,10 +9,20 @@ import type { CooldownDto } from '@/lib/schemas/laboratory';
 type Line = CooldownDto['lines'][number];
 
 /** A cooldown: made in the notebook `code`, or changed where `cooldown` is given. */
-export function CooldownForm({ code, devices, cooldown }: { code: string; devices: { id: string; name: string }[]; cooldown?: CooldownDto }) {
+export function CooldownForm({
+  code,
+  devices,
+  cooldown,
+}: {
+  code: string;
+  devices: { id: string; name: string }[];
+  cooldown?: CooldownDto;
+}) {
   const [lines, setLines] = useState<Line[]>(cooldown?.lines ?? []);
   const body = (form: FormData) => ({
-    ...Object.fromEntries(['name', 'cryostat', 'startedOn', 'baseTemperature', 'remarks'].map((key) => [key, String(form.get(key) ?? '')])),
+    ...Object.fromEntries(
+      ['name', 'cryostat', 'startedOn', 'baseTemperature', 'remarks'].map((key) => [key, String(form.get(key) ?? '')]),
+    ),
     endedOn: String(form.get('endedOn') ?? '') || null,
     deviceIds: form.getAll('device'),
     lines,
@@ -30,15 +40,32 @@ export function CooldownForm({ code, devices, cooldown }: { code: string; device
         <Field label="Name" name="name" defaultValue={cooldown?.name} placeholder="Tern 24" required />
         <Field label="Cryostat" name="cryostat" defaultValue={cooldown?.cryostat} required />
         <Field label="Start" name="startedOn" type="date" defaultValue={cooldown?.startedOn} required />
-        <Field label="End" name="endedOn" type="date" defaultValue={cooldown?.endedOn ?? ''} hint="Empty while it runs." />
-        <Field label="Base temperature" name="baseTemperature" defaultValue={cooldown?.baseTemperature} hint="With its unit: 12 mK" />
+        <Field
+          label="End"
+          name="endedOn"
+          type="date"
+          defaultValue={cooldown?.endedOn ?? ''}
+          hint="Empty while it runs."
+        />
+        <Field
+          label="Base temperature"
+          name="baseTemperature"
+          defaultValue={cooldown?.baseTemperature}
+          hint="With its unit: 12 mK"
+        />
       </div>
       <fieldset>
         <legend className="font-medium">Devices in it</legend>
         {devices.length === 0 ? <p className="text-sm text-quiet">This notebook has no device yet.</p> : null}
         {devices.map((device) => (
           <label key={device.id} className="flex min-h-8 items-center gap-2">
-            <input type="checkbox" name="device" value={device.id} defaultChecked={cooldown?.devices.some((d) => d.id === device.id)} /> {device.name}
+            <input
+              type="checkbox"
+              name="device"
+              value={device.id}
+              defaultChecked={cooldown?.devices.some((d) => d.id === device.id)}
+            />{' '}
+            {device.name}
           </label>
         ))}
       </fieldset>

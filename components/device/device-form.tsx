@@ -14,11 +14,26 @@ const toText = (value: number | null) => (value === null ? '' : String(value));
 /** A device: made in the notebook `code`, or changed where `device` is given. */
 export function DeviceForm({ code, device }: { code: string; device?: DeviceDto }) {
   const [gates, setGates] = useState<GateText[]>(() =>
-    (device?.gates ?? []).map((g) => ({ name: g.name, purpose: g.purpose, widthNm: toText(g.widthNm), lengthNm: toText(g.lengthNm) })),
+    (device?.gates ?? []).map((g) => ({
+      name: g.name,
+      purpose: g.purpose,
+      widthNm: toText(g.widthNm),
+      lengthNm: toText(g.lengthNm),
+    })),
   );
   const body = (form: FormData) => ({
-    ...Object.fromEntries(['name', 'lot', 'wafer', 'die', 'material', 'dimensions', 'remarks'].map((key) => [key, String(form.get(key) ?? '')])),
-    gates: gates.map((g) => ({ name: g.name, purpose: g.purpose, widthNm: toNumber(g.widthNm), lengthNm: toNumber(g.lengthNm) })),
+    ...Object.fromEntries(
+      ['name', 'lot', 'wafer', 'die', 'material', 'dimensions', 'remarks'].map((key) => [
+        key,
+        String(form.get(key) ?? ''),
+      ]),
+    ),
+    gates: gates.map((g) => ({
+      name: g.name,
+      purpose: g.purpose,
+      widthNm: toNumber(g.widthNm),
+      lengthNm: toNumber(g.lengthNm),
+    })),
   });
   return (
     <ActionForm
@@ -35,7 +50,12 @@ export function DeviceForm({ code, device }: { code: string; device?: DeviceDto 
         <Field label="Lot" name="lot" defaultValue={device?.lot} />
         <Field label="Wafer" name="wafer" defaultValue={device?.wafer} />
         <Field label="Die" name="die" defaultValue={device?.die} />
-        <Field label="Dimensions" name="dimensions" defaultValue={device?.dimensions} hint="channel width, gate pitch, etch depth, with units" />
+        <Field
+          label="Dimensions"
+          name="dimensions"
+          defaultValue={device?.dimensions}
+          hint="channel width, gate pitch, etch depth, with units"
+        />
       </div>
       <RowList
         legend="Gates"

@@ -5,7 +5,12 @@ import { DataTable, type Column } from '@/components/ui/data-table';
 import type { DeviceLine } from '@/lib/schemas/laboratory';
 
 const columns: Column<DeviceLine>[] = [
-  { key: 'name', title: 'Device', value: (row) => row.name, cell: (row) => <Link href={`/devices/${row.id}`}>{row.name}</Link> },
+  {
+    key: 'name',
+    title: 'Device',
+    value: (row) => row.name,
+    cell: (row) => <Link href={`/devices/${row.id}`}>{row.name}</Link>,
+  },
   { key: 'material', title: 'Material', value: (row) => row.material },
   { key: 'gates', title: 'Gates', value: (row) => row.gates, numeric: true },
   { key: 'cooldowns', title: 'Cooldowns', value: (row) => row.cooldowns, numeric: true },
@@ -14,5 +19,14 @@ const columns: Column<DeviceLine>[] = [
 ];
 
 export function DeviceTable({ devices }: { devices: DeviceLine[] }) {
-  return <DataTable caption="Devices" rows={devices} columns={columns} rowKey={(row) => row.id} empty="No device is entered yet." fileName="devices" />;
+  return (
+    <DataTable
+      caption="Devices"
+      rows={devices}
+      columns={columns}
+      rowKey={(row) => row.id}
+      empty="No device is entered yet."
+      fileName="devices"
+    />
+  );
 }

@@ -10,9 +10,24 @@ export function Binding({ binding }: { binding: BindingDto }) {
         facts={[
           ['Entry', <strong key="t">{binding.title}</strong>],
           ['Leaf', <span key="l" className="figures">{`${binding.notebook} leaf ${binding.leaf}`}</span>],
-          ['Work of', <span key="w" className="figures">{binding.workDate}</span>],
-          ['Version', <span key="v" className="figures">{binding.seq}</span>],
-          ['Digest', <code key="d" className="break-all">{binding.digest}</code>],
+          [
+            'Work of',
+            <span key="w" className="figures">
+              {binding.workDate}
+            </span>,
+          ],
+          [
+            'Version',
+            <span key="v" className="figures">
+              {binding.seq}
+            </span>,
+          ],
+          [
+            'Digest',
+            <code key="d" className="break-all">
+              {binding.digest}
+            </code>,
+          ],
         ]}
       />
       {binding.warnings.length > 0 ? (
@@ -43,7 +58,9 @@ export function Binding({ binding }: { binding: BindingDto }) {
                 {binding.values.map((value, index) => (
                   <tr key={index}>
                     <td className="figures">{value.symbol}</td>
-                    <td className={value.text ? 'figures whitespace-nowrap' : 'text-error'}>{value.text ?? value.error ?? 'no result'}</td>
+                    <td className={value.text ? 'figures whitespace-nowrap' : 'text-error'}>
+                      {value.text ?? value.error ?? 'no result'}
+                    </td>
                     <td className="figures">{value.source}</td>
                   </tr>
                 ))}
@@ -60,7 +77,8 @@ export function Binding({ binding }: { binding: BindingDto }) {
           <ul>
             {binding.traces.map((trace) => (
               <li key={trace.handle} className="border-t border-rule py-1.5">
-                <span className="figures font-semibold">{trace.handle}</span> {trace.fileName}, {trace.bytes.toLocaleString('en').replace(/,/g, '\u2009')} bytes
+                <span className="figures font-semibold">{trace.handle}</span> {trace.fileName},{' '}
+                {trace.bytes.toLocaleString('en').replace(/,/g, '\u2009')} bytes
                 <code className="block break-all text-sm text-quiet">SHA-256 {trace.sha256}</code>
               </li>
             ))}

@@ -5,7 +5,12 @@ import { ActionForm } from '@/components/ui/action-form';
 import { Choice, Field } from '@/components/ui/field';
 
 type Named = { id: string; name: string };
-type Props = { code: string; cooldowns: Named[]; devices: Named[]; layouts: { key: string; name: string; about: string }[] };
+type Props = {
+  code: string;
+  cooldowns: Named[];
+  devices: Named[];
+  layouts: { key: string; name: string; about: string }[];
+};
 
 const localDate = () => new Intl.DateTimeFormat('en-CA', { dateStyle: 'short' }).format(new Date());
 
@@ -29,8 +34,20 @@ export function NewEntryForm({ code, cooldowns, devices, layouts }: Props) {
       done={(answer) => ({ go: `/entries/${String(answer.id)}` })}
     >
       <Field label="Title" name="title" required autoFocus maxLength={300} />
-      <Field label="Date of the work" name="workDate" type="date" defaultValue={localDate()} suppressHydrationWarning required />
-      <Choice label="Cooldown" name="cooldown" options={[{ value: '', text: 'none' }, ...cooldowns.map(({ id, name }) => ({ value: id, text: name }))]} defaultValue={cooldowns[0]?.id ?? ''} />
+      <Field
+        label="Date of the work"
+        name="workDate"
+        type="date"
+        defaultValue={localDate()}
+        suppressHydrationWarning
+        required
+      />
+      <Choice
+        label="Cooldown"
+        name="cooldown"
+        options={[{ value: '', text: 'none' }, ...cooldowns.map(({ id, name }) => ({ value: id, text: name }))]}
+        defaultValue={cooldowns[0]?.id ?? ''}
+      />
       <fieldset>
         <legend className="font-medium">Devices</legend>
         {devices.length === 0 ? <p className="text-sm text-quiet">This notebook has no device yet.</p> : null}
@@ -40,7 +57,11 @@ export function NewEntryForm({ code, cooldowns, devices, layouts }: Props) {
           </label>
         ))}
       </fieldset>
-      <Choice label="Layout" name="layout" options={layouts.map(({ key, name, about }) => ({ value: key, text: `${name}: ${about}` }))} />
+      <Choice
+        label="Layout"
+        name="layout"
+        options={layouts.map(({ key, name, about }) => ({ value: key, text: `${name}: ${about}` }))}
+      />
     </ActionForm>
   );
 }

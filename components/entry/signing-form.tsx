@@ -6,7 +6,12 @@ import { Field, LongField } from '@/components/ui/field';
 import { AttentionSentence, ErrorSentence } from '@/components/ui/sentence';
 import type { BindingDto, ChallengeDto } from '@/lib/schemas/signing';
 
-type Props = { entryId: string; purpose: 'sign' | 'countersign'; binding: BindingDto; witnesses?: { id: string; name: string }[] };
+type Props = {
+  entryId: string;
+  purpose: 'sign' | 'countersign';
+  binding: BindingDto;
+  witnesses?: { id: string; name: string }[];
+};
 
 /** Meaning, printed name, time with zone, the password again; signs what stands beside it and nothing else. */
 export function SigningForm({ entryId, purpose, binding, witnesses = [] }: Props) {
@@ -14,13 +19,19 @@ export function SigningForm({ entryId, purpose, binding, witnesses = [] }: Props
   const [problem, setProblem] = useState<string | null>(null);
   const [busy, setBusy] = useState(false);
   const [clock, setClock] = useState<{ text: string; zone: string } | null>(null);
-  const base = purpose === 'sign' ? `/api/entries/${entryId}/challenge` : `/api/entries/${entryId}/countersignature/challenge`;
+  const base =
+    purpose === 'sign' ? `/api/entries/${entryId}/challenge` : `/api/entries/${entryId}/countersignature/challenge`;
 
   useEffect(() => {
     const zone = Intl.DateTimeFormat().resolvedOptions().timeZone;
     let offset = 0;
     const tick = () =>
-      setClock({ zone, text: new Intl.DateTimeFormat('sv-SE', { dateStyle: 'short', timeStyle: 'medium' }).format(new Date(Date.now() + offset)) });
+      setClock({
+        zone,
+        text: new Intl.DateTimeFormat('sv-SE', { dateStyle: 'short', timeStyle: 'medium' }).format(
+          new Date(Date.now() + offset),
+        ),
+      });
     const timer = setInterval(tick, 1000);
     request<ChallengeDto>('POST', base, { versionDigest: binding.digest })
       .then((issued) => {
@@ -59,16 +70,19 @@ export function SigningForm({ entryId, purpose, binding, witnesses = [] }: Props
       <p className="font-serif text-lg">“{binding.meaning}”</p>
       <p>
         <strong>{binding.printedName}</strong>
-        <span className="figures block text-quiet">{clock ? `${clock.text} (${clock.zone})` : 'asking the server for the time …'}</span>
+        <span className="figures block text-quiet">
+          {clock ? `${clock.text} (${clock.zone})` : 'asking the server for the time …'}
+        </span>
       </p>
       <p className="text-sm text-quiet">
-        The statement is recorded with the server’s time and is marked “attested by the server”: it says that the server checked your password, not that a
-        key of yours signed.
+        The statement is recorded with the server’s time and is marked “attested by the server”: it says that the server
+        checked your password, not that a key of yours signed.
       </p>
       {binding.late ? (
         <>
           <AttentionSentence>
-            The work was {binding.late.days} days ago; a signature after {binding.late.limit} days is marked late, with the reason.
+            The work was {binding.late.days} days ago; a signature after {binding.late.limit} days is marked late, with
+            the reason.
           </AttentionSentence>
           <LongField label="Reason for signing late" name="lateReason" required />
         </>
@@ -76,7 +90,9 @@ export function SigningForm({ entryId, purpose, binding, witnesses = [] }: Props
       {purpose === 'sign' ? (
         <fieldset>
           <legend className="font-medium">Ask to countersign</legend>
-          {witnesses.length === 0 ? <p className="text-sm text-quiet">Nobody in this notebook took no part and may countersign.</p> : null}
+          {witnesses.length === 0 ? (
+            <p className="text-sm text-quiet">Nobody in this notebook took no part and may countersign.</p>
+          ) : null}
           {witnesses.map((witness) => (
             <label key={witness.id} className="flex min-h-8 items-center gap-2">
               <input type="checkbox" name="witness" value={witness.id} /> {witness.name}

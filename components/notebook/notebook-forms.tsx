@@ -9,26 +9,60 @@ import { notebookRoles, type NotebookRole } from '@/lib/schemas/person';
 
 export function FoundNotebook() {
   return (
-    <ActionForm method="POST" url="/api/notebooks" submit="Begin it" done={(answer) => ({ go: `/notebooks/${String(answer.code)}` })} className="mt-4 space-y-4">
-      <Field label="Code" name="code" placeholder="NB-03" hint="Letters, a hyphen, a number. It is printed on every leaf and stays." required />
+    <ActionForm
+      method="POST"
+      url="/api/notebooks"
+      submit="Begin it"
+      done={(answer) => ({ go: `/notebooks/${String(answer.code)}` })}
+      className="mt-4 space-y-4"
+    >
+      <Field
+        label="Code"
+        name="code"
+        placeholder="NB-03"
+        hint="Letters, a hyphen, a number. It is printed on every leaf and stays."
+        required
+      />
       <Field label="Title" name="title" required />
       <LongField label="About" name="description" />
     </ActionForm>
   );
 }
 
-export function NotebookFacts({ code, title, description, lateAfterDays }: { code: string; title: string; description: string; lateAfterDays: number }) {
+export function NotebookFacts({
+  code,
+  title,
+  description,
+  lateAfterDays,
+}: {
+  code: string;
+  title: string;
+  description: string;
+  lateAfterDays: number;
+}) {
   return (
     <ActionForm
       method="PUT"
       url={`/api/notebooks/${code}`}
       submit="Store"
-      toBody={(form) => ({ title: form.get('title'), description: form.get('description'), lateAfterDays: Number(form.get('lateAfterDays')) })}
+      toBody={(form) => ({
+        title: form.get('title'),
+        description: form.get('description'),
+        lateAfterDays: Number(form.get('lateAfterDays')),
+      })}
       done={() => 'Stored.'}
     >
       <Field label="Title" name="title" defaultValue={title} required />
       <LongField label="About" name="description" defaultValue={description} />
-      <Field label="A signature is late after (days)" name="lateAfterDays" type="number" min={0} max={365} defaultValue={lateAfterDays} required />
+      <Field
+        label="A signature is late after (days)"
+        name="lateAfterDays"
+        type="number"
+        min={0}
+        max={365}
+        defaultValue={lateAfterDays}
+        required
+      />
     </ActionForm>
   );
 }
@@ -101,7 +135,13 @@ export function Members({ code, members, mayChange }: { code: string; members: M
         </table>
       </div>
       {mayChange ? (
-        <ActionForm method="POST" url={`/api/notebooks/${code}/members`} submit="Add" done={() => ({ go: `/notebooks/${code}/members` })} className="mt-6 max-w-md space-y-4">
+        <ActionForm
+          method="POST"
+          url={`/api/notebooks/${code}/members`}
+          submit="Add"
+          done={() => ({ go: `/notebooks/${code}/members` })}
+          className="mt-6 max-w-md space-y-4"
+        >
           <Field label="E-mail address of somebody with an account" name="email" type="email" required />
           <Choice label="Role" name="role" options={notebookRoles} defaultValue="author" />
         </ActionForm>

@@ -15,7 +15,17 @@ const places = [
   { href: '/countersign', text: 'Countersign' },
 ] as const;
 
-export function BookHeader({ person, waiting, administrator, demo }: { person: PersonDto; waiting: number; administrator: boolean; demo: boolean }) {
+export function BookHeader({
+  person,
+  waiting,
+  administrator,
+  demo,
+}: {
+  person: PersonDto;
+  waiting: number;
+  administrator: boolean;
+  demo: boolean;
+}) {
   const path = usePathname();
   const here = (href: string) => (href === '/' ? path === '/' : path.startsWith(href));
   const links = [...places, ...(administrator ? [{ href: '/administration', text: 'Administration' }] : [])];

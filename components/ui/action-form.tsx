@@ -19,7 +19,16 @@ type Props = {
 };
 
 /** A form that sends JSON to a route and shows the route's sentence where it fails; what was typed stays in the fields. */
-export function ActionForm({ method, url, toBody, submit, done, children, reset = false, className = 'space-y-4' }: Props) {
+export function ActionForm({
+  method,
+  url,
+  toBody,
+  submit,
+  done,
+  children,
+  reset = false,
+  className = 'space-y-4',
+}: Props) {
   const [problem, setProblem] = useState<string | null>(null);
   const [said, setSaid] = useState<string | null>(null);
   const [busy, setBusy] = useState(false);
@@ -31,7 +40,11 @@ export function ActionForm({ method, url, toBody, submit, done, children, reset 
     setProblem(null);
     setSaid(null);
     try {
-      const answer = await request<Record<string, unknown>>(method, url, toBody ? toBody(form) : Object.fromEntries(form));
+      const answer = await request<Record<string, unknown>>(
+        method,
+        url,
+        toBody ? toBody(form) : Object.fromEntries(form),
+      );
       const next = done(answer);
       if (reset) element.reset();
       if (next && typeof next === 'object') window.location.assign(next.go);

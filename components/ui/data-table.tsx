@@ -4,7 +4,14 @@ import { useVirtualizer } from '@tanstack/react-virtual';
 import { usePathname, useSearchParams } from 'next/navigation';
 import { useMemo, useRef, useState, type ReactNode } from 'react';
 import { csvRow } from '@/lib/trace-format/csv-writer';
-import { compareCells, readTableState, rowMatches, writeTableState, type CellValue, type TableState } from './table-state';
+import {
+  compareCells,
+  readTableState,
+  rowMatches,
+  writeTableState,
+  type CellValue,
+  type TableState,
+} from './table-state';
 
 export type Column<Row> = {
   key: string;
@@ -34,7 +41,14 @@ export function DataTable<Row>({ caption, rows, columns, rowKey, empty, fileName
   const [state, setState] = useTableState();
   const shownColumns = columns.filter((column) => !state.hidden.includes(column.key));
   const shownRows = useMemo(() => {
-    const kept = state.filter.trim() ? rows.filter((row) => rowMatches(columns.map((c) => c.value(row)), state.filter.trim())) : rows;
+    const kept = state.filter.trim()
+      ? rows.filter((row) =>
+          rowMatches(
+            columns.map((c) => c.value(row)),
+            state.filter.trim(),
+          ),
+        )
+      : rows;
     const by = columns.find((column) => column.key === state.sort);
     return by ? [...kept].sort((a, b) => compareCells(by.value(a), by.value(b), state.descending)) : kept;
   }, [rows, columns, state.filter, state.sort, state.descending]);
@@ -45,7 +59,12 @@ export function DataTable<Row>({ caption, rows, columns, rowKey, empty, fileName
       <div className="my-3 flex flex-wrap items-end gap-3">
         <label className="grow sm:max-w-xs">
           <span className="text-sm text-quiet">Filter</span>
-          <input className="field" type="search" value={state.filter} onChange={(event) => setState({ ...state, filter: event.target.value })} />
+          <input
+            className="field"
+            type="search"
+            value={state.filter}
+            onChange={(event) => setState({ ...state, filter: event.target.value })}
+          />
         </label>
         <details className="relative">
           <summary className="press cursor-pointer list-none">Columns</summary>
@@ -57,7 +76,12 @@ export function DataTable<Row>({ caption, rows, columns, rowKey, empty, fileName
                   type="checkbox"
                   checked={!state.hidden.includes(column.key)}
                   onChange={(event) =>
-                    setState({ ...state, hidden: event.target.checked ? state.hidden.filter((key) => key !== column.key) : [...state.hidden, column.key] })
+                    setState({
+                      ...state,
+                      hidden: event.target.checked
+                        ? state.hidden.filter((key) => key !== column.key)
+                        : [...state.hidden, column.key],
+                    })
                   }
                 />
                 {column.title}
@@ -70,7 +94,14 @@ export function DataTable<Row>({ caption, rows, columns, rowKey, empty, fileName
           {shownRows.length === rows.length ? `${rows.length} rows` : `${shownRows.length} of ${rows.length} rows`}
         </p>
       </div>
-      <Body caption={caption} columns={shownColumns} rows={shownRows} rowKey={rowKey} state={state} onState={setState} />
+      <Body
+        caption={caption}
+        columns={shownColumns}
+        rows={shownRows}
+        rowKey={rowKey}
+        state={state}
+        onState={setState}
+      />
     </div>
   );
 }
@@ -91,7 +122,9 @@ function Export<Row>({ columns, rows, fileName }: { columns: Column<Row>[]; rows
   const [said, setSaid] = useState('');
   const table = () => [columns.map((c) => c.title), ...rows.map((row) => columns.map((c) => c.value(row)))];
   const copy = async () => {
-    const text = table().map((line) => line.map((cell) => String(cell ?? '').replace(/[\t\n\r]+/g, ' ')).join('\t')).join('\n');
+    const text = table()
+      .map((line) => line.map((cell) => String(cell ?? '').replace(/[\t\n\r]+/g, ' ')).join('\t'))
+      .join('\n');
     await navigator.clipboard.writeText(text);
     setSaid(`${rows.length} rows copied`);
   };
@@ -117,19 +150,34 @@ function Export<Row>({ columns, rows, fileName }: { columns: Column<Row>[]; rows
   );
 }
 
-type BodyProps<Row> = Pick<Props<Row>, 'caption' | 'columns' | 'rows' | 'rowKey'> & { state: TableState; onState: (next: TableState) => void };
+type BodyProps<Row> = Pick<Props<Row>, 'caption' | 'columns' | 'rows' | 'rowKey'> & {
+  state: TableState;
+  onState: (next: TableState) => void;
+};
 
 function Body<Row>({ caption, columns, rows, rowKey, state, onState }: BodyProps<Row>) {
   const scroller = useRef<HTMLDivElement>(null);
   const long = rows.length > virtualFrom;
-  const virtual = useVirtualizer({ count: rows.length, getScrollElement: () => scroller.current, estimateSize: () => rowHeight, overscan: 12, enabled: long });
+  const virtual = useVirtualizer({
+    count: rows.length,
+    getScrollElement: () => scroller.current,
+    estimateSize: () => rowHeight,
+    overscan: 12,
+    enabled: long,
+  });
   const items = virtual.getVirtualItems();
   const shown = long ? items.map((item) => rows[item.index]) : rows;
   const before = long ? (items[0]?.start ?? 0) : 0;
   const after = long ? virtual.getTotalSize() - (items[items.length - 1]?.end ?? 0) : 0;
   return (
     // Focusable, so that the keyboard can scroll it.
-    <div ref={scroller} tabIndex={0} role="region" aria-label={caption} className={`overflow-auto ${long ? 'max-h-[70vh]' : ''}`}>
+    <div
+      ref={scroller}
+      tabIndex={0}
+      role="region"
+      aria-label={caption}
+      className={`overflow-auto ${long ? 'max-h-[70vh]' : ''}`}
+    >
       <table className="table-plain" aria-rowcount={rows.length + 1}>
         <caption className="sr-only">{caption}</caption>
         <thead className="sticky top-0 bg-ground">
@@ -137,11 +185,18 @@ function Body<Row>({ caption, columns, rows, rowKey, state, onState }: BodyProps
             {columns.map((column) => {
               const sorted = state.sort === column.key;
               return (
-                <th key={column.key} scope="col" className={column.numeric ? '!text-right' : ''} aria-sort={sorted ? (state.descending ? 'descending' : 'ascending') : 'none'}>
+                <th
+                  key={column.key}
+                  scope="col"
+                  className={column.numeric ? '!text-right' : ''}
+                  aria-sort={sorted ? (state.descending ? 'descending' : 'ascending') : 'none'}
+                >
                   <button
                     type="button"
                     className="min-h-6 cursor-pointer font-medium hover:text-action"
-                    onClick={() => onState({ ...state, sort: column.key, descending: sorted ? !state.descending : false })}
+                    onClick={() =>
+                      onState({ ...state, sort: column.key, descending: sorted ? !state.descending : false })
+                    }
                   >
                     {column.title}
                     <span aria-hidden="true">{sorted ? (state.descending ? ' ↓' : ' ↑') : ''}</span>

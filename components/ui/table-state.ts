@@ -25,12 +25,21 @@ export type CellValue = string | number | null;
 export function compareCells(a: CellValue, b: CellValue, descending: boolean): number {
   if (a === null || a === '') return b === null || b === '' ? 0 : 1;
   if (b === null || b === '') return -1;
-  const order = typeof a === 'number' && typeof b === 'number' ? a - b : String(a).localeCompare(String(b), 'en', { numeric: true });
+  const order =
+    typeof a === 'number' && typeof b === 'number'
+      ? a - b
+      : String(a).localeCompare(String(b), 'en', { numeric: true });
   return descending ? -order : order;
 }
 
 /** Every word of the filter must occur somewhere in the row. */
 export function rowMatches(cells: CellValue[], filter: string): boolean {
-  const text = cells.map((cell) => String(cell ?? '')).join('\u0001').toLowerCase();
-  return filter.toLowerCase().split(/\s+/).every((word) => text.includes(word));
+  const text = cells
+    .map((cell) => String(cell ?? ''))
+    .join('\u0001')
+    .toLowerCase();
+  return filter
+    .toLowerCase()
+    .split(/\s+/)
+    .every((word) => text.includes(word));
 }

@@ -21,7 +21,11 @@ export function ThemeSwitch() {
   return (
     <label className="inline-flex items-center gap-2 text-sm text-quiet">
       <span>Theme</span>
-      <select className="field !w-auto !py-0 text-sm" value={theme} onChange={(event) => choose(event.target.value as Theme)}>
+      <select
+        className="field !w-auto !py-0 text-sm"
+        value={theme}
+        onChange={(event) => choose(event.target.value as Theme)}
+      >
         {choices.map((choice) => (
           <option key={choice}>{choice}</option>
         ))}

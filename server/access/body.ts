@@ -10,7 +10,10 @@ export async function readJsonBody(request: Request, maxBytes: number): Promise<
     throw new AppError('wrong_type', 'This address takes JSON (content-type application/json).');
   }
   const tooLarge = () =>
-    new AppError('too_large', `This is larger than the ${Math.round(maxBytes / 1e6)} MB taken here. It is kept in this browser; make it smaller.`);
+    new AppError(
+      'too_large',
+      `This is larger than the ${Math.round(maxBytes / 1e6)} MB taken here. It is kept in this browser; make it smaller.`,
+    );
   if (Number(request.headers.get('content-length') ?? 0) > maxBytes) throw tooLarge();
   const chunks: Uint8Array[] = [];
   let size = 0;

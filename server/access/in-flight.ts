@@ -8,7 +8,11 @@ const state = () => (holder.kelvinleafRequests ??= { running: 0, stopping: false
 /** Runs a request unless the server is stopping; `drained` waits for it. */
 export async function inFlight<T>(work: () => Promise<T>): Promise<T> {
   const s = state();
-  if (s.stopping) throw new AppError('unavailable', 'The server is stopping. Your text is kept in this browser and sent when it is back.');
+  if (s.stopping)
+    throw new AppError(
+      'unavailable',
+      'The server is stopping. Your text is kept in this browser and sent when it is back.',
+    );
   s.running += 1;
   try {
     return await work();

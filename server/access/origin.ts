@@ -23,7 +23,8 @@ function ownOrigins(): Set<string> {
   const base = new URL(env().baseUrl);
   const origins = new Set([base.origin]);
   if (base.hostname === 'localhost' || base.hostname === '127.0.0.1') {
-    for (const host of ['localhost', '127.0.0.1']) origins.add(`${base.protocol}//${host}${base.port ? `:${base.port}` : ''}`);
+    for (const host of ['localhost', '127.0.0.1'])
+      origins.add(`${base.protocol}//${host}${base.port ? `:${base.port}` : ''}`);
   }
   return origins;
 }

@@ -14,7 +14,10 @@ export async function takeTurn(key: string, limit: number, seconds: number): Pro
   const count = await countTurn(key, seconds);
   if (count > limit) {
     const minutes = Math.ceil(seconds / 60);
-    throw new AppError('too_many', `Too many tries. Wait ${minutes} minute${minutes === 1 ? '' : 's'}, then try again.`);
+    throw new AppError(
+      'too_many',
+      `Too many tries. Wait ${minutes} minute${minutes === 1 ? '' : 's'}, then try again.`,
+    );
   }
 }
 

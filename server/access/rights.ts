@@ -57,7 +57,8 @@ export type Standing = {
 };
 
 const frozenSentence: Record<Exclude<EntryState, 'draft'>, string> = {
-  signed: 'This entry is signed and cannot be edited. What you typed is kept in this browser; a signed entry changes only by an amendment.',
+  signed:
+    'This entry is signed and cannot be edited. What you typed is kept in this browser; a signed entry changes only by an amendment.',
   witnessed:
     'This entry is signed and countersigned and cannot be edited. What you typed is kept in this browser; a signed entry changes only by an amendment.',
   'struck out': 'This entry is struck out: it stays readable and is not changed any more.',
@@ -72,7 +73,10 @@ export function decide(action: Action, standing: Standing): void {
   if (!rule.roles) return;
   if (!standing.role) throw new AppError('not_found', 'There is nothing here, or it is not for you to see.');
   if (!rule.roles.includes(standing.role)) {
-    throw new AppError('not_allowed', `This needs the role ${listWords(rule.roles)} in the notebook; yours is ${standing.role}.`);
+    throw new AppError(
+      'not_allowed',
+      `This needs the role ${listWords(rule.roles)} in the notebook; yours is ${standing.role}.`,
+    );
   }
   const { entry } = standing;
   if (!entry) return;
@@ -80,7 +84,10 @@ export function decide(action: Action, standing: Standing): void {
     throw new AppError('not_allowed', 'Only the author of this entry can do this.');
   }
   if (rule.relation === 'writer' && !entry.isAuthor && !entry.mayContribute) {
-    throw new AppError('not_allowed', 'Only the author, and colleagues whom the author has invited, write in this entry.');
+    throw new AppError(
+      'not_allowed',
+      'Only the author, and colleagues whom the author has invited, write in this entry.',
+    );
   }
   if (rule.relation === 'no part' && (entry.isAuthor || entry.tookPart)) {
     throw new AppError(
@@ -91,7 +98,10 @@ export function decide(action: Action, standing: Standing): void {
     );
   }
   if (rule.states && !rule.states.includes(entry.state)) {
-    const sentence = entry.state === 'draft' ? 'This entry is not signed yet; until then this cannot be done.' : frozenSentence[entry.state];
+    const sentence =
+      entry.state === 'draft'
+        ? 'This entry is not signed yet; until then this cannot be done.'
+        : frozenSentence[entry.state];
     throw new AppError('frozen', sentence);
   }
 }

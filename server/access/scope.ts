@@ -18,21 +18,22 @@ type InNotebook = Base & { notebook: NotebookScope };
 type OfEntry = InNotebook & { entry: EntryScope; standing: Standing };
 
 /** What a call may work on, proven to be the caller's to use. */
-export type ScopeOf<A extends Action> = TargetOf<A> extends 'public'
-  ? { person: Person | null }
-  : TargetOf<A> extends 'notebook'
-    ? InNotebook
-    : TargetOf<A> extends 'entry'
-      ? OfEntry
-      : TargetOf<A> extends 'question'
-        ? OfEntry & { questionId: string }
-        : TargetOf<A> extends 'trace'
-          ? InNotebook & { traceId: string; entry: EntryScope | null }
-          : TargetOf<A> extends 'device'
-            ? InNotebook & { deviceId: string }
-            : TargetOf<A> extends 'cooldown'
-              ? InNotebook & { cooldownId: string }
-              : Base;
+export type ScopeOf<A extends Action> =
+  TargetOf<A> extends 'public'
+    ? { person: Person | null }
+    : TargetOf<A> extends 'notebook'
+      ? InNotebook
+      : TargetOf<A> extends 'entry'
+        ? OfEntry
+        : TargetOf<A> extends 'question'
+          ? OfEntry & { questionId: string }
+          : TargetOf<A> extends 'trace'
+            ? InNotebook & { traceId: string; entry: EntryScope | null }
+            : TargetOf<A> extends 'device'
+              ? InNotebook & { deviceId: string }
+              : TargetOf<A> extends 'cooldown'
+                ? InNotebook & { cooldownId: string }
+                : Base;
 
 const uuid = /^[0-9a-f]{8}-[0-9a-f]{4}-[0-9a-f]{4}-[0-9a-f]{4}-[0-9a-f]{12}$/;
 const nothingHere = () => new AppError('not_found', 'There is nothing here, or it is not for you to see.');
@@ -41,14 +42,19 @@ const nothingHere = () => new AppError('not_found', 'There is nothing here, or i
  * Finds the resource that `id` names, the person's standing towards it, and decides.
  * @throws AppError signed_out, not_found, not_allowed, frozen.
  */
-export async function authorise<A extends Action>(action: A, person: Person | null, id: string | null): Promise<ScopeOf<A>> {
+export async function authorise<A extends Action>(
+  action: A,
+  person: Person | null,
+  id: string | null,
+): Promise<ScopeOf<A>> {
   return (await resolve(action, person, id)) as ScopeOf<A>;
 }
 
 async function resolve(action: Action, person: Person | null, id: string | null): Promise<object> {
   const rule = actions[action];
   if (rule.target === 'public') return { person };
-  if (!person) throw new AppError('signed_out', 'You are signed out. Sign in again; what you typed is kept in this browser.');
+  if (!person)
+    throw new AppError('signed_out', 'You are signed out. Sign in again; what you typed is kept in this browser.');
   if (person.by === 'token' && !('token' in rule && rule.token)) {
     throw new AppError('not_allowed', 'A token cannot do this: it needs you, signed in.');
   }
@@ -67,7 +73,9 @@ async function resolve(action: Action, person: Person | null, id: string | null)
     case 'entry':
       return ofEntry(action, person, needUuid(id));
     case 'question': {
-      const [row] = await (await getDb())
+      const [row] = await (
+        await getDb()
+      )
         .select({ entryId: question.entryId })
         .from(question)
         .where(eq(question.id, needUuid(id)));
@@ -75,7 +83,9 @@ async function resolve(action: Action, person: Person | null, id: string | null)
       return { ...(await ofEntry(action, person, row.entryId)), questionId: id };
     }
     case 'trace': {
-      const [row] = await (await getDb())
+      const [row] = await (
+        await getDb()
+      )
         .select({ entryId: trace.entryId, notebookId: trace.notebookId })
         .from(trace)
         .where(eq(trace.id, needUuid(id)));
@@ -88,7 +98,9 @@ async function resolve(action: Action, person: Person | null, id: string | null)
     case 'device':
     case 'cooldown': {
       const table = rule.target === 'device' ? device : cooldown;
-      const [row] = await (await getDb())
+      const [row] = await (
+        await getDb()
+      )
         .select({ notebookId: table.notebookId })
         .from(table)
         .where(eq(table.id, needUuid(id)));
@@ -106,7 +118,9 @@ function needUuid(id: string | null): string {
 }
 
 async function notebookFor(personId: string, which: ReturnType<typeof eq>): Promise<NotebookScope | null> {
-  const [row] = await (await getDb())
+  const [row] = await (
+    await getDb()
+  )
     .select({
       id: notebook.id,
       code: notebook.code,
@@ -139,5 +153,3 @@ async function ofEntry(action: Action, person: Person, entryId: string) {
   decide(action, standing);
   return { person, notebook: found, entry: scope, standing };
 }
-
-

@@ -21,7 +21,9 @@ const invitationDays = 7;
  */
 export async function verifyOwnPassword(person: Person, password: string, purpose: string): Promise<void> {
   await takeTurn(`password:${person.id}`, 10, 600);
-  const [row] = await (await getDb())
+  const [row] = await (
+    await getDb()
+  )
     .select({ hash: account.password })
     .from(account)
     .where(and(eq(account.userId, person.id), eq(account.providerId, 'credential')));
@@ -31,7 +33,11 @@ export async function verifyOwnPassword(person: Person, password: string, purpos
 }
 
 export async function noteSecurity(kind: string, subject: string, address: string): Promise<void> {
-  await (await getDb()).insert(securityEvent).values({ id: randomUUID(), kind, subject: subject.slice(0, 200), address: address.slice(0, 60) });
+  await (
+    await getDb()
+  )
+    .insert(securityEvent)
+    .values({ id: randomUUID(), kind, subject: subject.slice(0, 200), address: address.slice(0, 60) });
 }
 
 export type InvitationInput = { email: string; name: string; role: InstallationRole };
@@ -45,7 +51,10 @@ export async function invite(by: Person | null, input: InvitationInput): Promise
   await db.transaction(async (tx) => {
     const [known] = await tx.select({ id: user.id }).from(user).where(eq(user.email, input.email));
     if (known) throw new AppError('conflict', 'Somebody with this address has an account already.', { field: 'email' });
-    await tx.update(invitation).set({ revokedAt: new Date() }).where(and(eq(invitation.email, input.email), isNull(invitation.usedAt), isNull(invitation.revokedAt)));
+    await tx
+      .update(invitation)
+      .set({ revokedAt: new Date() })
+      .where(and(eq(invitation.email, input.email), isNull(invitation.usedAt), isNull(invitation.revokedAt)));
     await tx.insert(invitation).values({
       id,
       ...input,
@@ -57,7 +66,10 @@ export async function invite(by: Person | null, input: InvitationInput): Promise
       await queueMail(tx, {
         to: input.email,
         subject: 'Invitation to the laboratory’s notebook',
-        lines: [`${by.name} invites you to Kelvinleaf, the notebook of the laboratory.`, `Choose a password here; the link works once, for ${invitationDays} days: ${link}`],
+        lines: [
+          `${by.name} invites you to Kelvinleaf, the notebook of the laboratory.`,
+          `Choose a password here; the link works once, for ${invitationDays} days: ${link}`,
+        ],
       });
     }
   });
@@ -65,17 +77,33 @@ export async function invite(by: Person | null, input: InvitationInput): Promise
 }
 
 /** @throws AppError gone with one sentence, whatever the reason, so that a guessed link learns nothing. */
-export async function findInvitation(secret: string): Promise<{ id: string; email: string; name: string; role: InstallationRole }> {
-  const [row] = await (await getDb())
+export async function findInvitation(
+  secret: string,
+): Promise<{ id: string; email: string; name: string; role: InstallationRole }> {
+  const [row] = await (
+    await getDb()
+  )
     .select()
     .from(invitation)
-    .where(and(eq(invitation.tokenHash, hashToken(secret)), isNull(invitation.usedAt), isNull(invitation.revokedAt), gt(invitation.expiresAt, new Date())));
+    .where(
+      and(
+        eq(invitation.tokenHash, hashToken(secret)),
+        isNull(invitation.usedAt),
+        isNull(invitation.revokedAt),
+        gt(invitation.expiresAt, new Date()),
+      ),
+    );
   if (!row) throw new AppError('gone', 'This link has expired or was used already. Ask for a new invitation.');
   return { id: row.id, email: row.email, name: row.name, role: row.role as InstallationRole };
 }
 
 /** Makes the account that the invitation is for; name and password are the invited person's own choice. */
-export async function acceptInvitation(secret: string, name: string, password: string, email?: string): Promise<{ email: string }> {
+export async function acceptInvitation(
+  secret: string,
+  name: string,
+  password: string,
+  email?: string,
+): Promise<{ email: string }> {
   const found = await findInvitation(secret);
   const address = found.email.endsWith('@first.invalid') ? email : found.email;
   if (!address) throw new AppError('invalid', 'Give your e-mail address.', { field: 'email' });
@@ -87,7 +115,8 @@ export async function acceptInvitation(secret: string, name: string, password: s
       .set({ usedAt: new Date() })
       .where(and(eq(invitation.id, found.id), isNull(invitation.usedAt)))
       .returning({ id: invitation.id });
-    if (used.length === 0) throw new AppError('gone', 'This link has expired or was used already. Ask for a new invitation.');
+    if (used.length === 0)
+      throw new AppError('gone', 'This link has expired or was used already. Ask for a new invitation.');
     await createAccount(tx, { email: address, name, role: found.role, passwordHash: hash, actorId: null });
   });
   return { email: address };
@@ -95,16 +124,38 @@ export async function acceptInvitation(secret: string, name: string, password: s
 
 export async function createAccount(
   tx: Tx,
-  input: { id?: string; email: string; name: string; role: InstallationRole; passwordHash: string; actorId: string | null },
+  input: {
+    id?: string;
+    email: string;
+    name: string;
+    role: InstallationRole;
+    passwordHash: string;
+    actorId: string | null;
+  },
 ): Promise<string> {
   const id = input.id ?? randomUUID();
   await tx.insert(user).values({ id, email: input.email, name: input.name, role: input.role, emailVerified: true });
-  await tx.insert(account).values({ id: randomUUID(), accountId: id, providerId: 'credential', userId: id, password: input.passwordHash });
-  await appendLog(tx, { kind: 'account created', actorId: input.actorId ?? id, detail: { account: id, role: input.role } });
+  await tx
+    .insert(account)
+    .values({ id: randomUUID(), accountId: id, providerId: 'credential', userId: id, password: input.passwordHash });
+  await appendLog(tx, {
+    kind: 'account created',
+    actorId: input.actorId ?? id,
+    detail: { account: id, role: input.role },
+  });
   return id;
 }
 
-export type AccountLine = { id: string; name: string; email: string; initials: string; role: InstallationRole; disabled: boolean; createdAt: string; twoFactor: boolean };
+export type AccountLine = {
+  id: string;
+  name: string;
+  email: string;
+  initials: string;
+  role: InstallationRole;
+  disabled: boolean;
+  createdAt: string;
+  twoFactor: boolean;
+};
 
 export async function listAccounts(db: DbOrTx): Promise<AccountLine[]> {
   const rows = await db.select().from(user).orderBy(asc(user.name));
@@ -121,12 +172,20 @@ export async function listAccounts(db: DbOrTx): Promise<AccountLine[]> {
 }
 
 /** Closes or opens an account, or changes its role; closing ends its sessions and tokens at once. */
-export async function changeAccount(by: Person, id: string, change: { disabled?: boolean; role?: InstallationRole }): Promise<void> {
+export async function changeAccount(
+  by: Person,
+  id: string,
+  change: { disabled?: boolean; role?: InstallationRole },
+): Promise<void> {
   const db = await getDb();
   await db.transaction(async (tx) => {
     const [row] = await tx.select().from(user).where(eq(user.id, id)).for('update');
     if (!row) throw new AppError('not_found', 'There is no such account.');
-    if (id === by.id) throw new AppError('not_allowed', 'Another administrator changes your own account, so that nobody locks the laboratory out.');
+    if (id === by.id)
+      throw new AppError(
+        'not_allowed',
+        'Another administrator changes your own account, so that nobody locks the laboratory out.',
+      );
     await tx
       .update(user)
       .set({
@@ -137,13 +196,24 @@ export async function changeAccount(by: Person, id: string, change: { disabled?:
       .where(eq(user.id, id));
     if (change.disabled) {
       await tx.delete(session).where(eq(session.userId, id));
-      await tx.update(token).set({ revokedAt: new Date() }).where(and(eq(token.userId, id), isNull(token.revokedAt)));
+      await tx
+        .update(token)
+        .set({ revokedAt: new Date() })
+        .where(and(eq(token.userId, id), isNull(token.revokedAt)));
     }
     await appendLog(tx, { kind: 'account changed', actorId: by.id, detail: { account: id, ...change } });
   });
 }
 
-export type InvitationLine = { id: string; email: string; name: string; role: string; createdAt: string; expiresAt: string; state: 'waiting' | 'used' | 'expired' | 'withdrawn' };
+export type InvitationLine = {
+  id: string;
+  email: string;
+  name: string;
+  role: string;
+  createdAt: string;
+  expiresAt: string;
+  state: 'waiting' | 'used' | 'expired' | 'withdrawn';
+};
 
 export async function listInvitations(db: DbOrTx): Promise<InvitationLine[]> {
   const rows = await db.select().from(invitation).orderBy(desc(invitation.createdAt)).limit(200);
@@ -159,13 +229,20 @@ export async function listInvitations(db: DbOrTx): Promise<InvitationLine[]> {
 }
 
 export async function withdrawInvitation(id: string): Promise<void> {
-  await (await getDb()).update(invitation).set({ revokedAt: new Date() }).where(and(eq(invitation.id, id), isNull(invitation.usedAt)));
+  await (
+    await getDb()
+  )
+    .update(invitation)
+    .set({ revokedAt: new Date() })
+    .where(and(eq(invitation.id, id), isNull(invitation.usedAt)));
 }
 
 export type SessionLine = { id: string; startedAt: string; userAgent: string; current: boolean };
 
 export async function listSessions(person: Person): Promise<SessionLine[]> {
-  const rows = await (await getDb())
+  const rows = await (
+    await getDb()
+  )
     .select()
     .from(session)
     .where(and(eq(session.userId, person.id), gt(session.expiresAt, new Date())))
@@ -206,14 +283,26 @@ export async function makeToken(userId: string, label: string): Promise<{ id: st
 export type TokenLine = { id: string; label: string; createdAt: string; lastUsedAt: string | null };
 
 export async function listTokens(person: Person): Promise<TokenLine[]> {
-  const rows = await (await getDb())
+  const rows = await (
+    await getDb()
+  )
     .select()
     .from(token)
     .where(and(eq(token.userId, person.id), isNull(token.revokedAt)))
     .orderBy(desc(token.createdAt));
-  return rows.map((row) => ({ id: row.id, label: row.label, createdAt: row.createdAt.toISOString(), lastUsedAt: row.lastUsedAt?.toISOString() ?? null }));
+  return rows.map((row) => ({
+    id: row.id,
+    label: row.label,
+    createdAt: row.createdAt.toISOString(),
+    lastUsedAt: row.lastUsedAt?.toISOString() ?? null,
+  }));
 }
 
 export async function revokeToken(person: Person, id: string): Promise<void> {
-  await (await getDb()).update(token).set({ revokedAt: new Date() }).where(and(eq(token.id, id), eq(token.userId, person.id)));
+  await (
+    await getDb()
+  )
+    .update(token)
+    .set({ revokedAt: new Date() })
+    .where(and(eq(token.id, id), eq(token.userId, person.id)));
 }

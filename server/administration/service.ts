@@ -20,7 +20,10 @@ export async function readAdministration(): Promise<AdministrationDto> {
   const db = await getDb();
   const [recovery] = await db.select({ value: setting.value }).from(setting).where(eq(setting.key, 'last-recovery'));
   const [stored] = await db
-    .select({ files: sql<number>`count(distinct ${trace.sha256})`, bytes: sql<number>`coalesce(sum(${trace.bytes}), 0)` })
+    .select({
+      files: sql<number>`count(distinct ${trace.sha256})`,
+      bytes: sql<number>`coalesce(sum(${trace.bytes}), 0)`,
+    })
     .from(trace);
   return {
     accounts: await listAccounts(db),

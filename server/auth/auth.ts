@@ -58,12 +58,15 @@ function build(db: Db) {
       session: {
         create: {
           before: async (session) => {
-            const [person] = await (await getDb())
+            const [person] = await (
+              await getDb()
+            )
               .select({ disabledAt: schema.user.disabledAt })
               .from(schema.user)
               .where(eq(schema.user.id, session.userId));
             // The same words as for a wrong password: whether an account is closed is nobody's business.
-            if (!person || person.disabledAt) throw new APIError('UNAUTHORIZED', { message: 'Invalid email or password' });
+            if (!person || person.disabledAt)
+              throw new APIError('UNAUTHORIZED', { message: 'Invalid email or password' });
           },
         },
       },

@@ -23,6 +23,11 @@ export async function checkPassword({ hash, password }: { hash: string; password
   const [scheme, n, r, p, salt, key] = hash.split('$');
   if (scheme !== 'scrypt') return false;
   const wanted = Buffer.from(key, 'base64url');
-  const made = await scrypt(password, Buffer.from(salt, 'base64url'), { ...cost, N: Number(n), r: Number(r), p: Number(p) });
+  const made = await scrypt(password, Buffer.from(salt, 'base64url'), {
+    ...cost,
+    N: Number(n),
+    r: Number(r),
+    p: Number(p),
+  });
   return timingSafeEqual(wanted, made);
 }

@@ -17,7 +17,10 @@ function withCookies(answer: Response, body: object): Response {
   return response;
 }
 
-const wrongPassword = () => new AppError('invalid', 'E-mail address or password is not right. Nothing is lost; try again.', { field: 'password' });
+const wrongPassword = () =>
+  new AppError('invalid', 'E-mail address or password is not right. Nothing is lost; try again.', {
+    field: 'password',
+  });
 
 /**
  * Signs in; with a second factor the answer is `{secondFactor: true}` and a code must follow.
@@ -38,7 +41,11 @@ export async function signIn(headers: Headers, input: { email: string; password:
 }
 
 async function noteFailure(kind: string, subject: string, address: string): Promise<void> {
-  await (await getDb()).insert(securityEvent).values({ id: randomUUID(), kind, subject: subject.slice(0, 200), address: address.slice(0, 60) });
+  await (
+    await getDb()
+  )
+    .insert(securityEvent)
+    .values({ id: randomUUID(), kind, subject: subject.slice(0, 200), address: address.slice(0, 60) });
 }
 
 export async function signOut(headers: Headers): Promise<Response> {
@@ -47,14 +54,20 @@ export async function signOut(headers: Headers): Promise<Response> {
 }
 
 /** Finishes a sign-in with a code of the second factor, or a recovery code. A code works once. */
-export async function finishSecondFactor(headers: Headers, input: { code: string; recovery: boolean }): Promise<Response> {
+export async function finishSecondFactor(
+  headers: Headers,
+  input: { code: string; recovery: boolean },
+): Promise<Response> {
   await takeTurn(`second-factor-address:${clientAddress(headers)}`, 100, 600);
   const auth = await getAuth();
   const code = input.code.replace(/\s/g, '');
   const answer = input.recovery
     ? await auth.api.verifyBackupCode({ body: { code }, headers, asResponse: true })
     : await auth.api.verifyTOTP({ body: { code }, headers, asResponse: true });
-  const wrong = () => new AppError('invalid', 'The code is not right, or was used already. Wait for the next one and try again.', { field: 'code' });
+  const wrong = () =>
+    new AppError('invalid', 'The code is not right, or was used already. Wait for the next one and try again.', {
+      field: 'code',
+    });
   if (!answer.ok) throw wrong();
   const result = (await answer.json()) as { token?: string; user?: { id: string } };
   if (!input.recovery && result.user) {
@@ -103,11 +116,15 @@ export async function beginSecondFactor(headers: Headers, person: Person, passwo
   const auth = await getAuth();
   try {
     const made = await auth.api.enableTwoFactor({ body: { password }, headers });
-    if (made.method !== 'totp') throw new AppError('internal', 'The second factor could not be set up. Nothing was changed.');
+    if (made.method !== 'totp')
+      throw new AppError('internal', 'The second factor could not be set up. Nothing was changed.');
     return { uri: made.totpURI, recoveryCodes: made.backupCodes };
   } catch (error) {
     if (!(error instanceof APIError)) throw error;
-    throw new AppError('invalid', 'The password is not right. Nothing was changed.', { field: 'password', cause: error });
+    throw new AppError('invalid', 'The password is not right. Nothing was changed.', {
+      field: 'password',
+      cause: error,
+    });
   }
 }
 
@@ -116,7 +133,10 @@ export async function confirmSecondFactor(headers: Headers, person: Person, code
   await takeTurn(`second-factor:${person.id}`, 10, 600);
   const auth = await getAuth();
   const answer = await auth.api.verifyTOTP({ body: { code }, headers, asResponse: true });
-  if (!answer.ok) throw new AppError('invalid', 'The code is not right. Check the clock of the device and try the next code.', { field: 'code' });
+  if (!answer.ok)
+    throw new AppError('invalid', 'The code is not right. Check the clock of the device and try the next code.', {
+      field: 'code',
+    });
   return withCookies(answer, {});
 }
 
@@ -124,7 +144,8 @@ export async function endSecondFactor(headers: Headers, person: Person, password
   await takeTurn(`password:${person.id}`, 10, 600);
   const auth = await getAuth();
   const answer = await auth.api.disableTwoFactor({ body: { password }, headers, asResponse: true });
-  if (!answer.ok) throw new AppError('invalid', 'The password is not right. Nothing was changed.', { field: 'password' });
+  if (!answer.ok)
+    throw new AppError('invalid', 'The password is not right. Nothing was changed.', { field: 'password' });
   const [row] = await (await getDb()).select({ on: user.twoFactorEnabled }).from(user).where(eq(user.id, person.id));
   if (row.on) throw new AppError('internal', 'The second factor is still on. Try again.');
   return withCookies(answer, {});

@@ -20,7 +20,18 @@ const shared = {
   alias: { '@': root, 'server-only': path.join(root, 'tests/server-only.ts') },
 };
 
-await build({ ...shared, packages: 'external', entryPoints: [path.join(root, 'server/commands/run.ts')], outdir: path.join(root, 'dist/commands') });
+await build({
+  ...shared,
+  packages: 'external',
+  entryPoints: [path.join(root, 'server/commands/run.ts')],
+  outdir: path.join(root, 'dist/commands'),
+});
 if (workers.length > 0) {
-  await build({ ...shared, packages: 'external', entryPoints: workers, outdir: path.join(root, 'dist/workers'), entryNames: '[name]' });
+  await build({
+    ...shared,
+    packages: 'external',
+    entryPoints: workers,
+    outdir: path.join(root, 'dist/workers'),
+    entryNames: '[name]',
+  });
 }

@@ -7,7 +7,10 @@ import path from 'node:path';
 export function findChromium() {
   const given = process.env.CHROMIUM_PATH;
   const names = ['chromium', 'chromium-browser', 'google-chrome'];
-  const candidates = [...(given ? [given] : []), ...(process.env.PATH ?? '').split(path.delimiter).flatMap((folder) => names.map((name) => path.join(folder, name)))];
+  const candidates = [
+    ...(given ? [given] : []),
+    ...(process.env.PATH ?? '').split(path.delimiter).flatMap((folder) => names.map((name) => path.join(folder, name))),
+  ];
   return candidates.find(isExecutable) ?? null;
 }
 
@@ -27,10 +30,15 @@ export function installChromium() {
     process.stdout.write('Installing the chromium package for the browser tests …\n');
     const env = { ...process.env, DEBIAN_FRONTEND: 'noninteractive' };
     spawnSync('apt-get', ['update', '-qq'], { stdio: 'inherit', env });
-    spawnSync('apt-get', ['install', '-y', '-qq', '--no-install-recommends', 'chromium'], { stdio: ['ignore', 'ignore', 'inherit'], env });
+    spawnSync('apt-get', ['install', '-y', '-qq', '--no-install-recommends', 'chromium'], {
+      stdio: ['ignore', 'ignore', 'inherit'],
+      env,
+    });
     const found = findChromium();
     if (found) return found;
   }
-  process.stderr.write('The browser tests need Chromium, and it could not be installed from here. Install the chromium package, or set CHROMIUM_PATH.\n');
+  process.stderr.write(
+    'The browser tests need Chromium, and it could not be installed from here. Install the chromium package, or set CHROMIUM_PATH.\n',
+  );
   process.exit(1);
 }

@@ -49,9 +49,21 @@ function build() {
 function sources() {
   const roots = ['app', 'components', 'lib', 'server', 'fakes', 'drizzle'];
   const files = roots.flatMap((folder) =>
-    fs.readdirSync(folder, { recursive: true, withFileTypes: true }).filter((item) => item.isFile()).map((item) => path.join(item.parentPath, item.name)),
+    fs
+      .readdirSync(folder, { recursive: true, withFileTypes: true })
+      .filter((item) => item.isFile())
+      .map((item) => path.join(item.parentPath, item.name)),
   );
-  return [...files.filter((file) => !/\.test\.tsx?$/.test(file)), 'package-lock.json', 'next.config.js', 'tailwind.config.ts', 'postcss.config.js', 'tsconfig.json', 'proxy.ts', 'instrumentation.ts'].sort();
+  return [
+    ...files.filter((file) => !/\.test\.tsx?$/.test(file)),
+    'package-lock.json',
+    'next.config.js',
+    'tailwind.config.ts',
+    'postcss.config.js',
+    'tsconfig.json',
+    'proxy.ts',
+    'instrumentation.ts',
+  ].sort();
 }
 
 function digest(files) {
@@ -63,11 +75,19 @@ function digest(files) {
 function serve() {
   const base = process.env.BASE_URL || `http://localhost:${port}`;
   if (!base.startsWith('https:') && !['localhost', '127.0.0.1'].includes(new URL(base).hostname)) {
-    fail('Beyond this machine the notebook needs https: without it a browser can neither hash nor sign. Put a TLS proxy in front and set BASE_URL to its https address.');
+    fail(
+      'Beyond this machine the notebook needs https: without it a browser can neither hash nor sign. Put a TLS proxy in front and set BASE_URL to its https address.',
+    );
   }
   const child = spawn(process.execPath, ['node_modules/next/dist/bin/next', 'start', '-p', port, '-H', host], {
     stdio: ['ignore', 'inherit', 'inherit'],
-    env: { ...process.env, NODE_ENV: 'production', NEXT_TELEMETRY_DISABLED: '1', BUILD_ID: buildId, NEXT_MANUAL_SIG_HANDLE: 'true' },
+    env: {
+      ...process.env,
+      NODE_ENV: 'production',
+      NEXT_TELEMETRY_DISABLED: '1',
+      BUILD_ID: buildId,
+      NEXT_MANUAL_SIG_HANDLE: 'true',
+    },
   });
   let stopping = false;
   for (const signal of ['SIGINT', 'SIGTERM', 'SIGHUP']) {

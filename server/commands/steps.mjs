@@ -7,7 +7,9 @@ const root = path.resolve(import.meta.dirname, '../..');
 /** Installs what is missing, and with `build` builds too; through the start command, which knows how. */
 export function prepare({ build = false } = {}) {
   process.chdir(root);
-  const result = spawnSync(process.execPath, ['server/commands/start.mjs', build ? '--build-only' : '--install-only'], { stdio: 'inherit' });
+  const result = spawnSync(process.execPath, ['server/commands/start.mjs', build ? '--build-only' : '--install-only'], {
+    stdio: 'inherit',
+  });
   if (result.status !== 0) process.exit(result.status ?? 1);
 }
 

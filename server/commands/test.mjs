@@ -11,15 +11,26 @@ mkdirSync('test-results', { recursive: true });
 const totals = { passed: 0, failed: 0 };
 
 const vitestReport = 'test-results/vitest.json';
-const vitestFine = step('Unit and service tests', 'npx', ['--no-install', 'vitest', 'run', '--reporter=default', '--reporter=json', `--outputFile.json=${vitestReport}`], { tolerate: true });
-count(vitestReport, vitestFine, (report) => ({ passed: report.numPassedTests, failed: report.numFailedTests + failedSuites(report) }));
+const vitestFine = step(
+  'Unit and service tests',
+  'npx',
+  ['--no-install', 'vitest', 'run', '--reporter=default', '--reporter=json', `--outputFile.json=${vitestReport}`],
+  { tolerate: true },
+);
+count(vitestReport, vitestFine, (report) => ({
+  passed: report.numPassedTests,
+  failed: report.numFailedTests + failedSuites(report),
+}));
 
 const browserReport = 'test-results/browser.json';
 const browserFine = step('Browser tests', 'npx', ['--no-install', 'playwright', 'test'], {
   tolerate: true,
   env: { CHROMIUM_PATH: chromium, PLAYWRIGHT_JSON_OUTPUT_NAME: browserReport },
 });
-count(browserReport, browserFine, (report) => ({ passed: report.stats.expected, failed: report.stats.unexpected + report.stats.flaky + report.errors.length }));
+count(browserReport, browserFine, (report) => ({
+  passed: report.stats.expected,
+  failed: report.stats.unexpected + report.stats.flaky + report.errors.length,
+}));
 
 process.stdout.write(`${totals.passed} passed, ${totals.failed} failed\n`);
 process.exit(totals.failed === 0 && vitestFine && browserFine ? 0 : 1);
@@ -32,5 +43,7 @@ function count(file, fine, read) {
 }
 
 function failedSuites(report) {
-  return report.testResults.filter((suite) => suite.status === 'failed' && suite.assertionResults.every((test) => test.status !== 'failed')).length;
+  return report.testResults.filter(
+    (suite) => suite.status === 'failed' && suite.assertionResults.every((test) => test.status !== 'failed'),
+  ).length;
 }

@@ -11,10 +11,17 @@ import { notebook, notebookMember } from '@/server/db/schema/notebooks';
 export async function listCooldowns(personId: string, notebookId: string | null = null): Promise<CooldownLine[]> {
   const db = await getDb();
   const rows = await db
-    .select({ row: cooldown, code: notebook.code, entries: sql<number>`(select count(*) from entry where entry.cooldown_id = ${cooldown.id})` })
+    .select({
+      row: cooldown,
+      code: notebook.code,
+      entries: sql<number>`(select count(*) from entry where entry.cooldown_id = ${cooldown.id})`,
+    })
     .from(cooldown)
     .innerJoin(notebook, eq(notebook.id, cooldown.notebookId))
-    .innerJoin(notebookMember, and(eq(notebookMember.notebookId, cooldown.notebookId), eq(notebookMember.userId, personId)))
+    .innerJoin(
+      notebookMember,
+      and(eq(notebookMember.notebookId, cooldown.notebookId), eq(notebookMember.userId, personId)),
+    )
     .where(notebookId === null ? sql`true` : eq(cooldown.notebookId, notebookId))
     .orderBy(desc(cooldown.startedOn));
   const ids = rows.map(({ row }) => row.id);
@@ -42,8 +49,16 @@ export async function listCooldowns(personId: string, notebookId: string | null 
 
 export async function readCooldown(cooldownId: string): Promise<CooldownDto> {
   const db = await getDb();
-  const [row] = await db.select({ cooldown, code: notebook.code }).from(cooldown).innerJoin(notebook, eq(notebook.id, cooldown.notebookId)).where(eq(cooldown.id, cooldownId));
-  const lines = await db.select().from(cooldownLine).where(eq(cooldownLine.cooldownId, cooldownId)).orderBy(asc(cooldownLine.position));
+  const [row] = await db
+    .select({ cooldown, code: notebook.code })
+    .from(cooldown)
+    .innerJoin(notebook, eq(notebook.id, cooldown.notebookId))
+    .where(eq(cooldown.id, cooldownId));
+  const lines = await db
+    .select()
+    .from(cooldownLine)
+    .where(eq(cooldownLine.cooldownId, cooldownId))
+    .orderBy(asc(cooldownLine.position));
   const devices = await db
     .select({ id: device.id, name: device.name })
     .from(cooldownDevice)
@@ -62,15 +77,32 @@ export async function readCooldown(cooldownId: string): Promise<CooldownDto> {
     remarks,
     revision,
     devices,
-    lines: lines.map(({ name: lineName, contact, attenuation, filter, biasTee, instrument }) => ({ name: lineName, contact, attenuation, filter, biasTee, instrument })),
+    lines: lines.map(({ name: lineName, contact, attenuation, filter, biasTee, instrument }) => ({
+      name: lineName,
+      contact,
+      attenuation,
+      filter,
+      biasTee,
+      instrument,
+    })),
   };
 }
 
-export async function createCooldown(notebookId: string, personId: string, input: CooldownInput): Promise<{ id: string }> {
+export async function createCooldown(
+  notebookId: string,
+  personId: string,
+  input: CooldownInput,
+): Promise<{ id: string }> {
   return (await getDb()).transaction((tx) => insertCooldown(tx, randomUUID(), notebookId, personId, input));
 }
 
-export async function insertCooldown(tx: Tx, id: string, notebookId: string, personId: string, input: CooldownInput): Promise<{ id: string }> {
+export async function insertCooldown(
+  tx: Tx,
+  id: string,
+  notebookId: string,
+  personId: string,
+  input: CooldownInput,
+): Promise<{ id: string }> {
   const { deviceIds, lines, ...facts } = input;
   await tx.insert(cooldown).values({ id, notebookId, createdBy: personId, ...facts });
   await insertParts(tx, id, notebookId, deviceIds, lines);
@@ -78,7 +110,11 @@ export async function insertCooldown(tx: Tx, id: string, notebookId: string, per
 }
 
 /** @throws AppError conflict where somebody changed the cooldown since `revision`. */
-export async function changeCooldown(scope: { cooldownId: string; notebookId: string }, revision: number, input: CooldownInput): Promise<{ revision: number }> {
+export async function changeCooldown(
+  scope: { cooldownId: string; notebookId: string },
+  revision: number,
+  input: CooldownInput,
+): Promise<{ revision: number }> {
   const { deviceIds, lines, ...facts } = input;
   return (await getDb()).transaction(async (tx) => {
     const changed = await tx
@@ -86,7 +122,11 @@ export async function changeCooldown(scope: { cooldownId: string; notebookId: st
       .set({ ...facts, revision: revision + 1 })
       .where(and(eq(cooldown.id, scope.cooldownId), eq(cooldown.revision, revision)))
       .returning({ revision: cooldown.revision });
-    if (changed.length === 0) throw new AppError('conflict', 'Somebody changed this cooldown meanwhile. Nothing was stored; open it in another tab and compare.');
+    if (changed.length === 0)
+      throw new AppError(
+        'conflict',
+        'Somebody changed this cooldown meanwhile. Nothing was stored; open it in another tab and compare.',
+      );
     await tx.delete(cooldownDevice).where(eq(cooldownDevice.cooldownId, scope.cooldownId));
     await tx.delete(cooldownLine).where(eq(cooldownLine.cooldownId, scope.cooldownId));
     await insertParts(tx, scope.cooldownId, scope.notebookId, deviceIds, lines);
@@ -94,11 +134,24 @@ export async function changeCooldown(scope: { cooldownId: string; notebookId: st
   });
 }
 
-async function insertParts(tx: Tx, cooldownId: string, notebookId: string, deviceIds: string[], lines: CooldownInput['lines']): Promise<void> {
+async function insertParts(
+  tx: Tx,
+  cooldownId: string,
+  notebookId: string,
+  deviceIds: string[],
+  lines: CooldownInput['lines'],
+): Promise<void> {
   if (deviceIds.length > 0) {
-    const own = await tx.select({ id: device.id }).from(device).where(and(inArray(device.id, deviceIds), eq(device.notebookId, notebookId)));
-    if (own.length !== new Set(deviceIds).size) throw new AppError('invalid', 'A device of the list is not one of this notebook.', { field: 'deviceIds' });
+    const own = await tx
+      .select({ id: device.id })
+      .from(device)
+      .where(and(inArray(device.id, deviceIds), eq(device.notebookId, notebookId)));
+    if (own.length !== new Set(deviceIds).size)
+      throw new AppError('invalid', 'A device of the list is not one of this notebook.', { field: 'deviceIds' });
     await tx.insert(cooldownDevice).values(own.map(({ id }) => ({ cooldownId, deviceId: id })));
   }
-  if (lines.length > 0) await tx.insert(cooldownLine).values(lines.map((line, position) => ({ id: randomUUID(), cooldownId, position, ...line })));
+  if (lines.length > 0)
+    await tx
+      .insert(cooldownLine)
+      .values(lines.map((line, position) => ({ id: randomUUID(), cooldownId, position, ...line })));
 }

@@ -17,7 +17,8 @@ export class JournaledPGlite extends PGlite {
   journal: Journal | null = null;
 
   override async query<T>(query: string, params?: unknown[], options?: QueryOptions): Promise<Results<T>> {
-    if (!this.journal || !/^\s*(insert|update|delete|with)\b/i.test(query)) return super.query<T>(query, params, options);
+    if (!this.journal || !/^\s*(insert|update|delete|with)\b/i.test(query))
+      return super.query<T>(query, params, options);
     return this.transaction((tx) => tx.query<T>(query, params, options));
   }
 
@@ -210,7 +211,10 @@ export async function closeEmbedded(pg: JournaledPGlite, dataDir: string): Promi
 /** Newest first. */
 async function listCopies(folder: string): Promise<string[]> {
   if (!(await exists(folder))) return [];
-  return (await fs.readdir(folder)).filter((name) => /^\d{12}$/.test(name)).sort().reverse();
+  return (await fs.readdir(folder))
+    .filter((name) => /^\d{12}$/.test(name))
+    .sort()
+    .reverse();
 }
 
 async function putCopyInPlace(pgFolder: string, copiesFolder: string, copies: string[]): Promise<string> {
@@ -226,7 +230,9 @@ async function putCopyInPlace(pgFolder: string, copiesFolder: string, copies: st
       await fs.rm(pgFolder, { recursive: true, force: true });
     }
   }
-  throw new Error(`The database does not open, and neither does any copy in ${copiesFolder}. Nothing was deleted. Restore a backup.`);
+  throw new Error(
+    `The database does not open, and neither does any copy in ${copiesFolder}. Nothing was deleted. Restore a backup.`,
+  );
 }
 
 function bootId(): string | null {

@@ -144,7 +144,9 @@ async function readSegment(file: string, isNewest: boolean): Promise<{ records: 
     if (!record) {
       const isLastLine = end === -1 || end === text.length - 1;
       if (isNewest && isLastLine) break;
-      throw new Error(`The journal file ${file} is damaged at byte ${goodBytes}; nothing was replayed and nothing removed.`);
+      throw new Error(
+        `The journal file ${file} is damaged at byte ${goodBytes}; nothing was replayed and nothing removed.`,
+      );
     }
     records.push(record);
     goodBytes += Buffer.byteLength(line) + 1;

@@ -10,7 +10,12 @@ const inline = (text: string): NodeJson[] =>
   text.split(/(\{[^}]+\}|\$[^$]+\$)/).flatMap((part): NodeJson[] => {
     if (part === '') return [];
     if (part.startsWith('{')) {
-      return [{ type: 'value', attrs: { id: newBlockId(), source: part.slice(1, -1), unit: null, digits: null, shown: null } }];
+      return [
+        {
+          type: 'value',
+          attrs: { id: newBlockId(), source: part.slice(1, -1), unit: null, digits: null, shown: null },
+        },
+      ];
     }
     if (part.startsWith('$')) return [{ type: 'equation', attrs: { tex: part.slice(1, -1) } }];
     return [{ type: 'text', text: part }];
@@ -19,7 +24,11 @@ const inline = (text: string): NodeJson[] =>
 const withId = () => ({ id: newBlockId() });
 
 export const paragraph = (text: string): NodeJson => ({ type: 'paragraph', attrs: withId(), content: inline(text) });
-export const heading = (text: string): NodeJson => ({ type: 'heading', attrs: { ...withId(), level: 2 }, content: inline(text) });
+export const heading = (text: string): NodeJson => ({
+  type: 'heading',
+  attrs: { ...withId(), level: 2 },
+  content: inline(text),
+});
 export const equationBlock = (tex: string): NodeJson => ({ type: 'equationBlock', attrs: { ...withId(), tex } });
 export const logLine = (at: Date, text: string): NodeJson => ({
   type: 'logLine',
@@ -82,5 +91,8 @@ export function traceBlock(trace: TraceDto, words: TraceWords): NodeJson {
     })),
   };
   const view: TraceView = { x: words.x, y: words.y, logX: false, logY: false, range: null };
-  return { type: 'trace', attrs: { ...withId(), traceId: trace.id, handle: words.handle, settings, spans: words.spans ?? [], view } };
+  return {
+    type: 'trace',
+    attrs: { ...withId(), traceId: trace.id, handle: words.handle, settings, spans: words.spans ?? [], view },
+  };
 }

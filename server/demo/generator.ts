@@ -28,7 +28,15 @@ const header = (what: string, facts: string[]) =>
 /** Current of one electron per cycle, in fA. */
 const perCycleFa = (frequencyHz: number) => elementaryCharge.value * frequencyHz * 1e15;
 
-type OnOff = { name: string; seed: number; frequencyHz: number; escape: number; offsetFa: number; noiseFa: number; rows?: number };
+type OnOff = {
+  name: string;
+  seed: number;
+  frequencyHz: number;
+  escape: number;
+  offsetFa: number;
+  noiseFa: number;
+  rows?: number;
+};
 
 /** Drive on at 14–46 s and 74–106 s of 120 s, off otherwise; white noise with a little correlation, as an amplifier's filter makes. */
 export function onOffRun({ name, seed, frequencyHz, escape, offsetFa, noiseFa, rows = 24000 }: OnOff): TraceFile {
@@ -45,12 +53,23 @@ export function onOffRun({ name, seed, frequencyHz, escape, offsetFa, noiseFa, r
   return { name, text: `${lines.join('\n')}\n` };
 }
 
-type WaitScan = { name: string; seed: number; frequencyHz: number; tauUs: number; exitMv: number; offsetFa: number; noiseFa: number };
+type WaitScan = {
+  name: string;
+  seed: number;
+  frequencyHz: number;
+  tauUs: number;
+  exitMv: number;
+  offsetFa: number;
+  noiseFa: number;
+};
 
 /** Escape probability 1 − exp(−t/τ) against waiting time (one exponential), as a current. */
 export function waitingTimeScan({ name, seed, frequencyHz, tauUs, exitMv, offsetFa, noiseFa }: WaitScan): TraceFile {
   const random = randomFrom(seed);
-  const lines = [header('waiting-time scan', [`drive = ${frequencyHz / 1e3} kHz`, `V_exit = ${exitMv} mV`]), 't_wait (us),I (fA)'];
+  const lines = [
+    header('waiting-time scan', [`drive = ${frequencyHz / 1e3} kHz`, `V_exit = ${exitMv} mV`]),
+    't_wait (us),I (fA)',
+  ];
   for (let i = 0; i < 24; i += 1) {
     const t = 0.15 + i * 0.18;
     const current = offsetFa + perCycleFa(frequencyHz) * (1 - Math.exp(-t / tauUs)) + noiseFa * random.normal();
@@ -71,12 +90,21 @@ export function staircaseScan({ name, seed, frequencyHz, noisePa, delta }: Stair
     const v = -380 + i * 0.25;
     const step = (m: number) => Math.exp(-Math.exp(-perVolt * (v + 368 - (m * delta) / perVolt)));
     const n = step(0) + step(1) + step(2);
-    lines.push(`${comma(v, 2)};${comma(n * elementaryCharge.value * frequencyHz * 1e12 + noisePa * random.normal(), 5)}`);
+    lines.push(
+      `${comma(v, 2)};${comma(n * elementaryCharge.value * frequencyHz * 1e12 + noisePa * random.normal(), 5)}`,
+    );
   }
   return { name, text: `${lines.join('\r\n')}\r\n` };
 }
 
-type Stability = { name: string; seed: number; rows: number; currentPa: number; noisePa: number; driftPaPerHour: number };
+type Stability = {
+  name: string;
+  seed: number;
+  rows: number;
+  currentPa: number;
+  noisePa: number;
+  driftPaPerHour: number;
+};
 
 /** A plateau current over hours: white noise, a slow random walk, a steady drift. */
 export function stabilityRun({ name, seed, rows, currentPa, noisePa, driftPaPerHour }: Stability): TraceFile {
@@ -86,7 +114,9 @@ export function stabilityRun({ name, seed, rows, currentPa, noisePa, driftPaPerH
   for (let i = 0; i < rows; i += 1) {
     walk += noisePa * 0.002 * random.normal();
     const t = i * 0.1;
-    lines.push(`${t.toFixed(1)}\t${(currentPa + (driftPaPerHour * t) / 3600 + walk + noisePa * random.normal()).toFixed(6)}`);
+    lines.push(
+      `${t.toFixed(1)}\t${(currentPa + (driftPaPerHour * t) / 3600 + walk + noisePa * random.normal()).toFixed(6)}`,
+    );
   }
   return { name, text: `${lines.join('\n')}\n` };
 }

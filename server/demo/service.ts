@@ -61,13 +61,21 @@ async function writeEntry(entry: DemoEntry, people: DemoPeople, places: DemoPlac
   const seq = await atTime(at(entry.daysAgo, 15, 10), async () => cutVersion(id, author, await revisionOf(id), null));
   if (entry.state === 'draft') return;
   if (entry.state === 'struck out') {
-    await atTime(at(entry.daysAgo, 16, 0), async () => strikeOut(await authorise('entry.strike', author, id), entry.strikeReason ?? 'Begun twice.'));
+    await atTime(at(entry.daysAgo, 16, 0), async () =>
+      strikeOut(await authorise('entry.strike', author, id), entry.strikeReason ?? 'Begun twice.'),
+    );
     return;
   }
   await atTime(at(entry.daysAgo - (entry.signedAfterDays ?? 0), 16, 5), async () => {
     const scope = await authorise('entry.sign', author, id);
     const { challengeId } = await issueChallenge(scope, 'sign', seq.digest);
-    await signVerified(scope, { challengeId, versionDigest: seq.digest, zone: 'Europe/Oslo', lateReason: entry.lateReason ?? null, witnessIds: [people[entry.witness ?? 'priya'].id] });
+    await signVerified(scope, {
+      challengeId,
+      versionDigest: seq.digest,
+      zone: 'Europe/Oslo',
+      lateReason: entry.lateReason ?? null,
+      witnessIds: [people[entry.witness ?? 'priya'].id],
+    });
   });
   await questionsAndWitness(entry, id, seq.digest, traces, people);
 }
@@ -93,7 +101,13 @@ async function attach(files: TraceFile[], entryId: string, notebookId: string, a
 }
 
 /** Writes the blocks one after another over the day, so that the gutter shows a day's times, with the results in place. */
-async function writeBlocks(id: string, author: Person, entry: DemoEntry, blocks: NodeJson[], traces: TraceDto[]): Promise<void> {
+async function writeBlocks(
+  id: string,
+  author: Person,
+  entry: DemoEntry,
+  blocks: NodeJson[],
+  traces: TraceDto[],
+): Promise<void> {
   const doc = { type: 'doc' as const, content: blocks };
   const { cells, traces: named } = partsOf(doc);
   const sheet = await evaluateOnServer(cells, named, new Map(traces.map((trace) => [trace.id, trace])));
@@ -121,23 +135,45 @@ async function writeBlocks(id: string, author: Person, entry: DemoEntry, blocks:
 }
 
 async function revisionOf(id: string): Promise<number> {
-  const [draft] = await (await getDb()).select({ revision: entryDraft.revision }).from(entryDraft).where(eq(entryDraft.entryId, id));
+  const [draft] = await (
+    await getDb()
+  )
+    .select({ revision: entryDraft.revision })
+    .from(entryDraft)
+    .where(eq(entryDraft.entryId, id));
   return draft.revision;
 }
 
-async function questionsAndWitness(entry: DemoEntry, id: string, digest: string, traces: TraceDto[], people: DemoPeople): Promise<void> {
+async function questionsAndWitness(
+  entry: DemoEntry,
+  id: string,
+  digest: string,
+  traces: TraceDto[],
+  people: DemoPeople,
+): Promise<void> {
   const witness = people[entry.witness ?? 'priya'];
   const later = entry.daysAgo - (entry.signedAfterDays ?? 0) - 1;
   if (entry.question) {
     const { text, answer } = entry.question;
-    const asked = await atTime(at(later, 10, 15), async () => ask(await authorise('entry.ask', witness, id), { versionDigest: digest, blockId: null, quote: '', text }));
-    if (answer) await atTime(at(later, 13, 30), async () => answerQuestion(await authorise('question.answer', people[entry.author], asked.id), answer));
+    const asked = await atTime(at(later, 10, 15), async () =>
+      ask(await authorise('entry.ask', witness, id), { versionDigest: digest, blockId: null, quote: '', text }),
+    );
+    if (answer)
+      await atTime(at(later, 13, 30), async () =>
+        answerQuestion(await authorise('question.answer', people[entry.author], asked.id), answer),
+      );
   }
   if (entry.state !== 'witnessed') return;
   await atTime(at(later, 14, 0), async () => {
     const scope = await authorise('entry.countersign', witness, id);
     for (const trace of traces) await noteServed(witness.id, scope.entry, trace.id);
     const { challengeId } = await issueChallenge(scope, 'countersign', digest);
-    await countersignVerified(scope, { challengeId, versionDigest: digest, zone: 'Europe/Oslo', lateReason: null, witnessIds: [] });
+    await countersignVerified(scope, {
+      challengeId,
+      versionDigest: digest,
+      zone: 'Europe/Oslo',
+      lateReason: null,
+      witnessIds: [],
+    });
   });
 }

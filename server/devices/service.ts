@@ -9,7 +9,9 @@ import { notebook, notebookMember } from '@/server/db/schema/notebooks';
 
 /** Devices of the notebooks that the person is a member of; with `notebookId` of that one only. */
 export async function listDevices(personId: string, notebookId: string | null = null): Promise<DeviceLine[]> {
-  const rows = await (await getDb())
+  const rows = await (
+    await getDb()
+  )
     .select({
       id: device.id,
       notebook: notebook.code,
@@ -21,15 +23,27 @@ export async function listDevices(personId: string, notebookId: string | null = 
     })
     .from(device)
     .innerJoin(notebook, eq(notebook.id, device.notebookId))
-    .innerJoin(notebookMember, and(eq(notebookMember.notebookId, device.notebookId), eq(notebookMember.userId, personId)))
+    .innerJoin(
+      notebookMember,
+      and(eq(notebookMember.notebookId, device.notebookId), eq(notebookMember.userId, personId)),
+    )
     .where(notebookId === null ? sql`true` : eq(device.notebookId, notebookId))
     .orderBy(asc(device.name));
-  return rows.map((row) => ({ ...row, gates: Number(row.gates), entries: Number(row.entries), cooldowns: Number(row.cooldowns) }));
+  return rows.map((row) => ({
+    ...row,
+    gates: Number(row.gates),
+    entries: Number(row.entries),
+    cooldowns: Number(row.cooldowns),
+  }));
 }
 
 export async function readDevice(deviceId: string): Promise<DeviceDto> {
   const db = await getDb();
-  const [row] = await db.select({ device, code: notebook.code }).from(device).innerJoin(notebook, eq(notebook.id, device.notebookId)).where(eq(device.id, deviceId));
+  const [row] = await db
+    .select({ device, code: notebook.code })
+    .from(device)
+    .innerJoin(notebook, eq(notebook.id, device.notebookId))
+    .where(eq(device.id, deviceId));
   const gates = await db.select().from(gate).where(eq(gate.deviceId, deviceId)).orderBy(asc(gate.position));
   const cooldowns = await db
     .select({ id: cooldown.id, name: cooldown.name })
@@ -49,7 +63,12 @@ export async function readDevice(deviceId: string): Promise<DeviceDto> {
     dimensions,
     remarks,
     revision,
-    gates: gates.map(({ name: gateName, purpose, widthNm, lengthNm }) => ({ name: gateName, purpose, widthNm, lengthNm })),
+    gates: gates.map(({ name: gateName, purpose, widthNm, lengthNm }) => ({
+      name: gateName,
+      purpose,
+      widthNm,
+      lengthNm,
+    })),
     cooldowns,
   };
 }
@@ -58,7 +77,13 @@ export async function createDevice(notebookId: string, personId: string, input: 
   return (await getDb()).transaction((tx) => insertDevice(tx, randomUUID(), notebookId, personId, input));
 }
 
-export async function insertDevice(tx: Tx, id: string, notebookId: string, personId: string, input: DeviceInput): Promise<{ id: string }> {
+export async function insertDevice(
+  tx: Tx,
+  id: string,
+  notebookId: string,
+  personId: string,
+  input: DeviceInput,
+): Promise<{ id: string }> {
   const { gates, ...facts } = input;
   await tx.insert(device).values({ id, notebookId, createdBy: personId, ...facts });
   await insertGates(tx, id, gates);
@@ -66,7 +91,11 @@ export async function insertDevice(tx: Tx, id: string, notebookId: string, perso
 }
 
 /** @throws AppError conflict where somebody changed the device since `revision`. */
-export async function changeDevice(deviceId: string, revision: number, input: DeviceInput): Promise<{ revision: number }> {
+export async function changeDevice(
+  deviceId: string,
+  revision: number,
+  input: DeviceInput,
+): Promise<{ revision: number }> {
   const { gates, ...facts } = input;
   return (await getDb()).transaction(async (tx) => {
     const changed = await tx
@@ -74,7 +103,11 @@ export async function changeDevice(deviceId: string, revision: number, input: De
       .set({ ...facts, revision: revision + 1 })
       .where(and(eq(device.id, deviceId), eq(device.revision, revision)))
       .returning({ revision: device.revision });
-    if (changed.length === 0) throw new AppError('conflict', 'Somebody changed this device meanwhile. Nothing was stored; open it in another tab and compare.');
+    if (changed.length === 0)
+      throw new AppError(
+        'conflict',
+        'Somebody changed this device meanwhile. Nothing was stored; open it in another tab and compare.',
+      );
     await tx.delete(gate).where(eq(gate.deviceId, deviceId));
     await insertGates(tx, deviceId, gates);
     return { revision: changed[0].revision };

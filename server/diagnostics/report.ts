@@ -10,7 +10,12 @@ export function report(event: string, detail: Record<string, unknown> = {}, erro
   const safe = Object.fromEntries(
     Object.entries(detail).map(([key, value]) => [key, secretName.test(key) ? '(left out)' : value]),
   );
-  const line = { at: new Date().toISOString(), event, ...safe, ...(error === undefined ? {} : { error: describe(error) }) };
+  const line = {
+    at: new Date().toISOString(),
+    event,
+    ...safe,
+    ...(error === undefined ? {} : { error: describe(error) }),
+  };
   process.stderr.write(`${escapeControls(JSON.stringify(line))}\n`);
 }
 
@@ -27,7 +32,10 @@ function describe(error: unknown): unknown {
     // A failed query's message carries its parameters, which may be somebody's text.
     message: error.message.replace(/\nparams:[\s\S]*$/, ''),
     ...(typeof code === 'string' ? { code } : {}),
-    stack: error.stack?.split('\n').filter((line) => line.trimStart().startsWith('at ')).slice(0, 8),
+    stack: error.stack
+      ?.split('\n')
+      .filter((line) => line.trimStart().startsWith('at '))
+      .slice(0, 8),
     ...(error.cause === undefined ? {} : { cause: describe(error.cause) }),
   };
 }

@@ -47,9 +47,13 @@ export async function saveDraft(entryId: string, person: Person, save: SaveDraft
     const draft = await findDraft(tx, entryId);
     if (draft.lastSaveId === save.saveId) return savedFrom(draft);
     if (draft.revision !== save.basedOn) {
-      throw new AppError('conflict', 'Another window or colleague changed this entry. Both texts are kept: compare them.', {
-        details: { current: await toDraftDto(tx, draft) },
-      });
+      throw new AppError(
+        'conflict',
+        'Another window or colleague changed this entry. Both texts are kept: compare them.',
+        {
+          details: { current: await toDraftDto(tx, draft) },
+        },
+      );
     }
     const received = now();
     const stamps = nextStamps(draft.stamps, doc.content ?? [], {
@@ -73,13 +77,23 @@ export async function saveDraft(entryId: string, person: Person, save: SaveDraft
       .returning();
     await tx
       .update(entry)
-      .set({ title: save.title.trim() || row.title, changedAt: received, words: `${save.title} ${documentText(doc)}`.slice(0, 200_000) })
+      .set({
+        title: save.title.trim() || row.title,
+        changedAt: received,
+        words: `${save.title} ${documentText(doc)}`.slice(0, 200_000),
+      })
       .where(eq(entry.id, entryId));
     if (row.authorId !== person.id) {
       await tx
         .update(entryContributor)
         .set({ wroteAt: received })
-        .where(and(eq(entryContributor.entryId, entryId), eq(entryContributor.userId, person.id), isNull(entryContributor.wroteAt)));
+        .where(
+          and(
+            eq(entryContributor.entryId, entryId),
+            eq(entryContributor.userId, person.id),
+            isNull(entryContributor.wroteAt),
+          ),
+        );
     }
     return savedFrom(stored);
   });

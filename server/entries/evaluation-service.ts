@@ -11,12 +11,21 @@ export type ServerEvaluation = {
 };
 
 /** Evaluates an unsaved sheet over this entry's received traces, for browsers that do not hold the samples. */
-export async function evaluateForEntry(entryId: string, cells: CellSource[], traces: NamedTrace[]): Promise<ServerEvaluation> {
+export async function evaluateForEntry(
+  entryId: string,
+  cells: CellSource[],
+  traces: NamedTrace[],
+): Promise<ServerEvaluation> {
   const files = await filesOf(await getDb(), entryId);
   const sheet = await evaluateOnServer(cells, traces, new Map(files.map((file) => [file.id, file])));
   return {
     engine: sheet.engine,
     results: [...sheet.results.values()],
-    columns: [...sheet.columns.values()].map(({ symbol, handle, unit, values }) => ({ symbol, handle, unit, rows: values.length })),
+    columns: [...sheet.columns.values()].map(({ symbol, handle, unit, values }) => ({
+      symbol,
+      handle,
+      unit,
+      rows: values.length,
+    })),
   };
 }

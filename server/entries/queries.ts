@@ -1,7 +1,15 @@
 import 'server-only';
 import { and, asc, desc, eq, inArray, sql } from 'drizzle-orm';
 import type { DbOrTx, Tx } from '@/server/db/client';
-import { entry, entryContributor, entryDevice, entryDraft, entryVersion, trace, traceColumn } from '@/server/db/schema/entries';
+import {
+  entry,
+  entryContributor,
+  entryDevice,
+  entryDraft,
+  entryVersion,
+  trace,
+  traceColumn,
+} from '@/server/db/schema/entries';
 import { cooldown, device } from '@/server/db/schema/laboratory';
 import { notebook } from '@/server/db/schema/notebooks';
 
@@ -63,13 +71,20 @@ export async function devicesOf(db: DbOrTx, entryId: string): Promise<{ id: stri
 
 export async function cooldownOf(db: DbOrTx, cooldownId: string | null): Promise<{ id: string; name: string } | null> {
   if (!cooldownId) return null;
-  const [row] = await db.select({ id: cooldown.id, name: cooldown.name }).from(cooldown).where(eq(cooldown.id, cooldownId));
+  const [row] = await db
+    .select({ id: cooldown.id, name: cooldown.name })
+    .from(cooldown)
+    .where(eq(cooldown.id, cooldownId));
   return row ?? null;
 }
 
 /** Everybody invited to write in the entry; `wroteAt` tells who did. */
 export async function contributorsOf(db: DbOrTx, entryId: string) {
-  return db.select().from(entryContributor).where(eq(entryContributor.entryId, entryId)).orderBy(asc(entryContributor.since));
+  return db
+    .select()
+    .from(entryContributor)
+    .where(eq(entryContributor.entryId, entryId))
+    .orderBy(asc(entryContributor.since));
 }
 
 export async function filesOf(db: DbOrTx, entryId: string): Promise<TraceRow[]> {

@@ -6,7 +6,14 @@ import { z } from 'zod';
 import { documentText } from '@/lib/document/text';
 import type { DocumentJson } from '@/lib/document/json';
 import { AppError } from '@/lib/errors/app-error';
-import { titleSchema, workDateSchema, type EntryDto, type EntryState, type PersonDto, type TraceDto } from '@/lib/schemas/entry';
+import {
+  titleSchema,
+  workDateSchema,
+  type EntryDto,
+  type EntryState,
+  type PersonDto,
+  type TraceDto,
+} from '@/lib/schemas/entry';
 import { allows } from '@/server/access/rights';
 import type { ScopeOf } from '@/server/access/scope';
 import { getDb, type DbOrTx, type Tx } from '@/server/db/client';
@@ -35,11 +42,17 @@ export const newEntrySchema = z
   .strict();
 
 /** Creates an entry on the notebook's next leaf. A repeated `requestKey` gives the entry that the first one made. */
-export async function createEntry(scope: ScopeOf<'entry.create'>, input: z.infer<typeof newEntrySchema>): Promise<{ id: string; leaf: number }> {
+export async function createEntry(
+  scope: ScopeOf<'entry.create'>,
+  input: z.infer<typeof newEntrySchema>,
+): Promise<{ id: string; leaf: number }> {
   const { notebook: book, person } = scope;
   const db = await getDb();
   return db.transaction(async (tx) => {
-    const [known] = await tx.select({ id: entry.id, leaf: entry.leaf, authorId: entry.authorId }).from(entry).where(eq(entry.requestKey, input.requestKey));
+    const [known] = await tx
+      .select({ id: entry.id, leaf: entry.leaf, authorId: entry.authorId })
+      .from(entry)
+      .where(eq(entry.requestKey, input.requestKey));
     if (known) {
       if (known.authorId !== person.id) throw new AppError('conflict', 'This request was made by somebody else.');
       return { id: known.id, leaf: known.leaf };
@@ -89,14 +102,41 @@ export async function insertEntry(tx: Tx, input: NewEntry): Promise<{ id: string
     createdAt: input.at,
     changedAt: input.at,
   });
-  if (input.deviceIds.length > 0) await tx.insert(entryDevice).values(input.deviceIds.map((deviceId) => ({ entryId: id, deviceId })));
-  const stamps = nextStamps({}, input.doc.content ?? [], { written: {}, clockOffsetMs: 0, by: input.authorId, received: input.at });
-  await tx.insert(entryDraft).values({ entryId: id, revision: 1, title: input.title, doc: input.doc, stamps, savedAt: input.at, savedBy: input.authorId });
-  await appendLog(tx, { kind: 'entry created', actorId: input.authorId, notebookId: input.notebookId, entryId: id, detail: { leaf } });
+  if (input.deviceIds.length > 0)
+    await tx.insert(entryDevice).values(input.deviceIds.map((deviceId) => ({ entryId: id, deviceId })));
+  const stamps = nextStamps({}, input.doc.content ?? [], {
+    written: {},
+    clockOffsetMs: 0,
+    by: input.authorId,
+    received: input.at,
+  });
+  await tx
+    .insert(entryDraft)
+    .values({
+      entryId: id,
+      revision: 1,
+      title: input.title,
+      doc: input.doc,
+      stamps,
+      savedAt: input.at,
+      savedBy: input.authorId,
+    });
+  await appendLog(tx, {
+    kind: 'entry created',
+    actorId: input.authorId,
+    notebookId: input.notebookId,
+    entryId: id,
+    detail: { leaf },
+  });
   return { id, leaf };
 }
 
-async function checkPlaces(tx: DbOrTx, notebookId: string, cooldownId: string | null, deviceIds: string[]): Promise<void> {
+async function checkPlaces(
+  tx: DbOrTx,
+  notebookId: string,
+  cooldownId: string | null,
+  deviceIds: string[],
+): Promise<void> {
   if (cooldownId && !(await queries.ownedCooldown(tx, notebookId, cooldownId))) {
     throw new AppError('invalid', 'This cooldown is not one of this notebook.', { field: 'cooldownId' });
   }
@@ -110,15 +150,22 @@ export const entryFactsSchema = z
   .strict();
 
 /** Date of work, cooldown and devices of a draft. */
-export async function changeFacts(scope: ScopeOf<'entry.write'>, facts: z.infer<typeof entryFactsSchema>): Promise<void> {
+export async function changeFacts(
+  scope: ScopeOf<'entry.write'>,
+  facts: z.infer<typeof entryFactsSchema>,
+): Promise<void> {
   const db = await getDb();
   await db.transaction(async (tx) => {
     const row = await queries.lockEntry(tx, scope.entry.id);
     refuseFrozen(row.state);
     await checkPlaces(tx, row.notebookId, facts.cooldownId, facts.deviceIds);
-    await tx.update(entry).set({ workDate: facts.workDate, cooldownId: facts.cooldownId, changedAt: now() }).where(eq(entry.id, row.id));
+    await tx
+      .update(entry)
+      .set({ workDate: facts.workDate, cooldownId: facts.cooldownId, changedAt: now() })
+      .where(eq(entry.id, row.id));
     await tx.delete(entryDevice).where(eq(entryDevice.entryId, row.id));
-    if (facts.deviceIds.length > 0) await tx.insert(entryDevice).values(facts.deviceIds.map((deviceId) => ({ entryId: row.id, deviceId })));
+    if (facts.deviceIds.length > 0)
+      await tx.insert(entryDevice).values(facts.deviceIds.map((deviceId) => ({ entryId: row.id, deviceId })));
     // The next version binds other facts, so it must be cut even where the text has not changed.
     await tx.update(entryDraft).set({ cutRevision: 0 }).where(eq(entryDraft.entryId, row.id));
   });
@@ -130,7 +177,11 @@ export async function readEntry(scope: ScopeOf<'entry.read'>): Promise<EntryDto>
   const { entry: row, person, notebook: book, standing } = scope;
   const contributors = await queries.contributorsOf(db, row.id);
   const head = row.headSeq > 0 ? await queries.findVersion(db, row.id, row.headSeq) : null;
-  const people = await peopleById(db, [row.authorId, ...contributors.map((c) => c.userId), ...(head ? [head.createdBy] : [])]);
+  const people = await peopleById(db, [
+    row.authorId,
+    ...contributors.map((c) => c.userId),
+    ...(head ? [head.createdBy] : []),
+  ]);
   const countersigns = allows('entry.countersign', standing);
   return {
     id: row.id,
@@ -144,7 +195,13 @@ export async function readEntry(scope: ScopeOf<'entry.read'>): Promise<EntryDto>
     cooldown: await queries.cooldownOf(db, row.cooldownId),
     devices: await queries.devicesOf(db, row.id),
     head: head
-      ? { id: head.id, seq: head.seq, digest: head.digest, createdAt: head.createdAt.toISOString(), createdBy: people.get(head.createdBy)! }
+      ? {
+          id: head.id,
+          seq: head.seq,
+          digest: head.digest,
+          createdAt: head.createdAt.toISOString(),
+          createdBy: people.get(head.createdBy)!,
+        }
       : null,
     struckReason: row.struckReason,
     questions: await questionsOf(db, row.id, person.id),
@@ -174,8 +231,14 @@ function lateness(row: queries.EntryRow, limit: number): EntryDto['late'] {
 /** Received files of an entry that are traces, with their columns. */
 export async function tracesOfEntry(db: DbOrTx, entryId: string): Promise<TraceDto[]> {
   const files = (await queries.filesOf(db, entryId)).filter((file) => file.kind === 'trace');
-  const columns = await queries.columnsOf(db, files.map((file) => file.id));
-  const people = await peopleById(db, files.map((file) => file.uploadedBy));
+  const columns = await queries.columnsOf(
+    db,
+    files.map((file) => file.id),
+  );
+  const people = await peopleById(
+    db,
+    files.map((file) => file.uploadedBy),
+  );
   return files.map((file) => serializeTrace(file, columns, people));
 }
 
@@ -210,7 +273,9 @@ export function serializeTrace(
   };
 }
 
-export const strikeSchema = z.object({ reason: z.string().trim().min(3, 'Give the reason, as on paper.').max(2000) }).strict();
+export const strikeSchema = z
+  .object({ reason: z.string().trim().min(3, 'Give the reason, as on paper.').max(2000) })
+  .strict();
 
 /** Strikes out a draft: its leaf number stays used and its text readable. */
 export async function strikeOut(scope: ScopeOf<'entry.strike'>, reason: string): Promise<void> {
@@ -219,8 +284,17 @@ export async function strikeOut(scope: ScopeOf<'entry.strike'>, reason: string):
     const row = await queries.lockEntry(tx, scope.entry.id);
     refuseFrozen(row.state);
     const at = now();
-    await tx.update(entry).set({ state: 'struck out', struckReason: reason, struckAt: at, changedAt: at }).where(eq(entry.id, row.id));
-    await appendLog(tx, { kind: 'struck out', actorId: scope.person.id, notebookId: row.notebookId, entryId: row.id, detail: { reason } });
+    await tx
+      .update(entry)
+      .set({ state: 'struck out', struckReason: reason, struckAt: at, changedAt: at })
+      .where(eq(entry.id, row.id));
+    await appendLog(tx, {
+      kind: 'struck out',
+      actorId: scope.person.id,
+      notebookId: row.notebookId,
+      entryId: row.id,
+      detail: { reason },
+    });
   });
 }
 
@@ -235,13 +309,24 @@ export async function inviteContributor(scope: ScopeOf<'entry.invite'>, userId: 
       .from(notebookMember)
       .where(and(eq(notebookMember.notebookId, scope.entry.notebookId), eq(notebookMember.userId, userId)));
     if (!member || (member.role !== 'lead' && member.role !== 'author') || userId === scope.person.id) {
-      throw new AppError('invalid', 'Only a lead or author of this notebook can write in this entry.', { field: 'userId' });
+      throw new AppError('invalid', 'Only a lead or author of this notebook can write in this entry.', {
+        field: 'userId',
+      });
     }
-    await tx.insert(entryContributor).values({ entryId: scope.entry.id, userId, invitedBy: scope.person.id }).onConflictDoUpdate({
-      target: [entryContributor.entryId, entryContributor.userId],
-      set: { endedAt: null },
+    await tx
+      .insert(entryContributor)
+      .values({ entryId: scope.entry.id, userId, invitedBy: scope.person.id })
+      .onConflictDoUpdate({
+        target: [entryContributor.entryId, entryContributor.userId],
+        set: { endedAt: null },
+      });
+    await appendLog(tx, {
+      kind: 'contributor invited',
+      actorId: scope.person.id,
+      notebookId: scope.entry.notebookId,
+      entryId: scope.entry.id,
+      detail: { person: userId },
     });
-    await appendLog(tx, { kind: 'contributor invited', actorId: scope.person.id, notebookId: scope.entry.notebookId, entryId: scope.entry.id, detail: { person: userId } });
   });
 }
 
@@ -261,7 +346,10 @@ export type EntryLine = {
 };
 
 /** Entries that a person may read, newest work first; `within` narrows them to one notebook, cooldown or device. */
-export async function listEntries(readerId: string, within: { notebookId: string } | { cooldownId: string } | { deviceId: string } | { everywhere: true }): Promise<EntryLine[]> {
+export async function listEntries(
+  readerId: string,
+  within: { notebookId: string } | { cooldownId: string } | { deviceId: string } | { everywhere: true },
+): Promise<EntryLine[]> {
   const db = await getDb();
   const place =
     'notebookId' in within
@@ -280,7 +368,10 @@ export async function listEntries(readerId: string, within: { notebookId: string
     })
     .from(entry)
     .innerJoin(notebook, eq(notebook.id, entry.notebookId))
-    .innerJoin(notebookMember, and(eq(notebookMember.notebookId, entry.notebookId), eq(notebookMember.userId, readerId)))
+    .innerJoin(
+      notebookMember,
+      and(eq(notebookMember.notebookId, entry.notebookId), eq(notebookMember.userId, readerId)),
+    )
     .leftJoin(cooldown, eq(cooldown.id, entry.cooldownId))
     .where(place)
     .orderBy(desc(entry.workDate), desc(entry.leaf))
@@ -295,7 +386,10 @@ export async function listEntries(readerId: string, within: { notebookId: string
           .innerJoin(device, eq(device.id, entryDevice.deviceId))
           .where(inArray(entryDevice.entryId, ids));
   const devicesByEntry = groupByEntry(devices);
-  const people = await peopleById(db, rows.map(({ row }) => row.authorId));
+  const people = await peopleById(
+    db,
+    rows.map(({ row }) => row.authorId),
+  );
   return rows.map(({ row, code, cooldown: cooldownName, openQuestions }) => ({
     id: row.id,
     notebook: code,
@@ -324,20 +418,37 @@ export async function possibleWitnesses(scope: ScopeOf<'entry.sign'>): Promise<P
   const members = await db
     .select({ id: notebookMember.userId })
     .from(notebookMember)
-    .where(and(eq(notebookMember.notebookId, scope.entry.notebookId), inArray(notebookMember.role, ['lead', 'author', 'witness'])));
-  const barred = new Set([scope.entry.authorId, ...(await queries.contributorsOf(db, scope.entry.id)).map((c) => c.userId)]);
-  const people = await peopleById(db, members.map((m) => m.id).filter((id) => !barred.has(id)));
+    .where(
+      and(
+        eq(notebookMember.notebookId, scope.entry.notebookId),
+        inArray(notebookMember.role, ['lead', 'author', 'witness']),
+      ),
+    );
+  const barred = new Set([
+    scope.entry.authorId,
+    ...(await queries.contributorsOf(db, scope.entry.id)).map((c) => c.userId),
+  ]);
+  const people = await peopleById(
+    db,
+    members.map((m) => m.id).filter((id) => !barred.has(id)),
+  );
   return [...people.values()].sort((a, b) => a.name.localeCompare(b.name));
 }
 
 /** Whether a digest is a version of an entry that the reader may see, for pasting on the verify page. */
-export async function findByDigest(readerId: string, digest: string): Promise<{ entryId: string; seq: number; title: string } | null> {
+export async function findByDigest(
+  readerId: string,
+  digest: string,
+): Promise<{ entryId: string; seq: number; title: string } | null> {
   const db = await getDb();
   const [row] = await db
     .select({ entryId: entryVersion.entryId, seq: entryVersion.seq, title: entryVersion.title })
     .from(entryVersion)
     .innerJoin(entry, eq(entry.id, entryVersion.entryId))
-    .innerJoin(notebookMember, and(eq(notebookMember.notebookId, entry.notebookId), eq(notebookMember.userId, readerId)))
+    .innerJoin(
+      notebookMember,
+      and(eq(notebookMember.notebookId, entry.notebookId), eq(notebookMember.userId, readerId)),
+    )
     .where(eq(entryVersion.digest, digest));
   return row ?? null;
 }

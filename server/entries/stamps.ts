@@ -6,10 +6,7 @@ import { sha256 } from '@/server/digest/service';
 
 /** Content of a block as far as a person wrote it: `shown` is the calculation's, not the writer's. */
 function blockDigest(block: NodeJson): string {
-  return digestOf(
-    JSON.parse(JSON.stringify(block, (key, value) => (key === 'shown' ? undefined : value))),
-    sha256,
-  );
+  return digestOf(JSON.parse(JSON.stringify(block, (key, value) => (key === 'shown' ? undefined : value))), sha256);
 }
 
 /**

@@ -27,7 +27,12 @@ const schemaNumber = 1;
  * stores the canonical bytes with the digest of the version before. A draft that has not changed since gives the newest version.
  * @throws AppError conflict (another revision), invalid with `details.differing`, frozen.
  */
-export async function cutVersion(entryId: string, person: Person, basedOn: number, reason: string | null): Promise<VersionDto> {
+export async function cutVersion(
+  entryId: string,
+  person: Person,
+  basedOn: number,
+  reason: string | null,
+): Promise<VersionDto> {
   const db = await getDb();
   const draft = await queries.findDraft(db, entryId);
   if (draft.revision !== basedOn) throw stale();
@@ -73,13 +78,23 @@ export async function cutVersion(entryId: string, person: Person, basedOn: numbe
 }
 
 const stale = () =>
-  new AppError('conflict', 'The text has changed since this page read it. Nothing was cut; look at the newest text first.');
+  new AppError(
+    'conflict',
+    'The text has changed since this page read it. Nothing was cut; look at the newest text first.',
+  );
 
 function refuseDiffering(cells: { id: string; shown: string | null }[], sheet: Sheet): void {
   const differing = cells.flatMap((cell) => {
     const computed = sheet.results.get(cell.id);
     if (cell.shown === null || !computed || computed.state === 'pending' || cell.shown === computed.text) return [];
-    return [{ id: cell.id, symbol: computed.symbol, shown: cell.shown, computed: computed.text ?? computed.error?.message ?? '' }];
+    return [
+      {
+        id: cell.id,
+        symbol: computed.symbol,
+        shown: cell.shown,
+        computed: computed.text ?? computed.error?.message ?? '',
+      },
+    ];
   });
   if (differing.length === 0) return;
   const [first] = differing;
@@ -196,7 +211,10 @@ function serializeVersion(version: VersionFacts, people: Awaited<ReturnType<type
 export async function listVersions(entryId: string): Promise<VersionDto[]> {
   const db = await getDb();
   const rows = await queries.listVersionRows(db, entryId);
-  const people = await peopleById(db, rows.map((row) => row.createdBy));
+  const people = await peopleById(
+    db,
+    rows.map((row) => row.createdBy),
+  );
   return rows.map((row) => serializeVersion(row, people));
 }
 
@@ -210,7 +228,13 @@ export async function readVersion(entryId: string, seq: number): Promise<Version
     doc: record.document as DocumentJson,
     stamps: record.stamps,
     values: record.values.map((value) => value.result as unknown as ValueResult),
-    traces: record.traces.map(({ handle, traceId, fileName, sha256, bytes }) => ({ handle, traceId, fileName, sha256, bytes })),
+    traces: record.traces.map(({ handle, traceId, fileName, sha256, bytes }) => ({
+      handle,
+      traceId,
+      fileName,
+      sha256,
+      bytes,
+    })),
   };
 }
 
@@ -218,7 +242,12 @@ export async function readVersion(entryId: string, seq: number): Promise<Version
  * Makes the text of an older version the draft again and cuts a version from it; nothing is lost, the versions between stay.
  * @throws AppError conflict, frozen, not_found.
  */
-export async function restoreVersion(entryId: string, person: Person, seq: number, basedOn: number): Promise<VersionDto> {
+export async function restoreVersion(
+  entryId: string,
+  person: Person,
+  seq: number,
+  basedOn: number,
+): Promise<VersionDto> {
   const old = await readVersion(entryId, seq);
   const db = await getDb();
   const revision = await db.transaction(async (tx) => {

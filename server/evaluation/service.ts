@@ -6,7 +6,14 @@ import { evaluateSheet } from '@/lib/expression/evaluate';
 import { readColumn } from '@/server/traces/service';
 
 /** Facts of a received file that a calculation needs. */
-export type TraceFacts = { id: string; fileName: string; sha256: string; rows: number; state: string; problem: string | null };
+export type TraceFacts = {
+  id: string;
+  fileName: string;
+  sha256: string;
+  rows: number;
+  state: string;
+  problem: string | null;
+};
 
 export type NamedTrace = Pick<TraceNodeAttributes, 'traceId' | 'handle' | 'settings' | 'spans'>;
 
@@ -31,7 +38,11 @@ export function partsOf(doc: DocumentJson): { cells: (CellSource & { shown: stri
  * Evaluates cells over stored traces. Only columns that a cell names are read from disk. A trace that is not in `facts`
  * (another entry's, or one that was never received) has no data, and the cells that use it say so.
  */
-export async function evaluateOnServer(cells: CellSource[], traces: NamedTrace[], facts: Map<string, TraceFacts>): Promise<Sheet> {
+export async function evaluateOnServer(
+  cells: CellSource[],
+  traces: NamedTrace[],
+  facts: Map<string, TraceFacts>,
+): Promise<Sheet> {
   const texts = cells.map((cell) => cell.source).join('\n');
   const sources: TraceSource[] = [];
   for (const trace of traces) {
@@ -51,7 +62,9 @@ export async function evaluateOnServer(cells: CellSource[], traces: NamedTrace[]
       rows: known?.rows ?? 0,
       column: (index) =>
         columns.get(index) ?? {
-          error: known ? (known.problem ?? 'The file is still being read.') : 'The file of this trace is not in this entry.',
+          error: known
+            ? (known.problem ?? 'The file is still being read.')
+            : 'The file of this trace is not in this entry.',
         },
     });
   }

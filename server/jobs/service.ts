@@ -12,7 +12,12 @@ const leaseMs = 10 * 60_000;
 const mostAttempts = 5;
 
 /** Queues work, in the transaction that makes it necessary. An equal `key` that has not finished well is not queued twice. */
-export async function enqueueJob(db: DbOrTx, kind: string, key: string, payload: Record<string, unknown>): Promise<void> {
+export async function enqueueJob(
+  db: DbOrTx,
+  kind: string,
+  key: string,
+  payload: Record<string, unknown>,
+): Promise<void> {
   await db
     .insert(job)
     .values({ id: randomUUID(), kind, key, payload })
@@ -35,7 +40,12 @@ export async function runOneJob(handlers: JobHandlers): Promise<boolean> {
     const [row] = await tx
       .select()
       .from(job)
-      .where(or(and(eq(job.state, 'waiting'), lte(job.runAfter, now)), and(eq(job.state, 'running'), lt(job.leaseUntil, now))))
+      .where(
+        or(
+          and(eq(job.state, 'waiting'), lte(job.runAfter, now)),
+          and(eq(job.state, 'running'), lt(job.leaseUntil, now)),
+        ),
+      )
       .orderBy(asc(job.runAfter))
       .limit(1)
       .for('update', { skipLocked: true });
@@ -58,7 +68,12 @@ export async function runOneJob(handlers: JobHandlers): Promise<boolean> {
     const again = taken.attempts < mostAttempts;
     await db
       .update(job)
-      .set({ state: again ? 'waiting' : 'failed', leaseUntil: null, problem, runAfter: new Date(Date.now() + 5000 * 2 ** taken.attempts) })
+      .set({
+        state: again ? 'waiting' : 'failed',
+        leaseUntil: null,
+        problem,
+        runAfter: new Date(Date.now() + 5000 * 2 ** taken.attempts),
+      })
       .where(eq(job.id, taken.id));
   }
   return true;

@@ -39,9 +39,7 @@ export async function appendLog(
   },
 ): Promise<void> {
   await tx.execute(sql`SELECT pg_advisory_xact_lock(7302)`);
-  const [{ next }] = await tx
-    .select({ next: sql<string>`coalesce(max(${logRecord.seq}), 0) + 1` })
-    .from(logRecord);
+  const [{ next }] = await tx.select({ next: sql<string>`coalesce(max(${logRecord.seq}), 0) + 1` }).from(logRecord);
   await tx.insert(logRecord).values({
     seq: Number(next),
     at: now(),

@@ -6,7 +6,8 @@ import { readLocalMailbox, type LocalMail } from './service';
 
 /** @throws AppError not_found wherever this is not a demonstration: links in mails belong to their recipients. */
 export async function openMailbox(): Promise<LocalMail[]> {
-  if (!env().demo || env().smtpUrl) throw new AppError('not_found', 'There is nothing here, or it is not for you to see.');
+  if (!env().demo || env().smtpUrl)
+    throw new AppError('not_found', 'There is nothing here, or it is not for you to see.');
   return readLocalMailbox(await getDb());
 }
 

@@ -45,7 +45,10 @@ export async function sendDueMail(db: Db): Promise<number> {
   for (const row of due) {
     try {
       await deliver({ id: row.id, to: row.recipient, subject: row.subject, text: row.body });
-      await db.update(mailMessage).set({ sentAt: new Date(), problem: null }).where(sql`${mailMessage.id} = ${row.id}`);
+      await db
+        .update(mailMessage)
+        .set({ sentAt: new Date(), problem: null })
+        .where(sql`${mailMessage.id} = ${row.id}`);
       sent += 1;
     } catch (error) {
       report('mail not sent', { mail: row.id, attempt: row.attempts + 1 }, error);
@@ -58,7 +61,15 @@ export async function sendDueMail(db: Db): Promise<number> {
   return sent;
 }
 
-export type OutboxLine = { id: string; to: string; subject: string; queuedAt: string; sentAt: string | null; attempts: number; problem: string | null };
+export type OutboxLine = {
+  id: string;
+  to: string;
+  subject: string;
+  queuedAt: string;
+  sentAt: string | null;
+  attempts: number;
+  problem: string | null;
+};
 
 /** The outbox as an administrator sees it: that a mail was sent, never its links. */
 export async function listOutbox(db: Db): Promise<OutboxLine[]> {
@@ -80,5 +91,11 @@ export type LocalMail = { id: string; to: string; subject: string; text: string;
 export async function readLocalMailbox(db: Db): Promise<LocalMail[]> {
   if (!env().demo || env().smtpUrl) return [];
   const rows = await db.select().from(mailMessage).orderBy(desc(mailMessage.queuedAt)).limit(50);
-  return rows.map((row) => ({ id: row.id, to: row.recipient, subject: row.subject, text: row.body, queuedAt: row.queuedAt.toISOString() }));
+  return rows.map((row) => ({
+    id: row.id,
+    to: row.recipient,
+    subject: row.subject,
+    text: row.body,
+    queuedAt: row.queuedAt.toISOString(),
+  }));
 }

@@ -3,7 +3,13 @@ import nodemailer from 'nodemailer';
 import { localMailbox } from '@/fakes/mailbox/transport';
 import { env } from '@/server/env/env';
 
-type Outgoing = { from: string; to: { name: string; address: string }; subject: string; text: string; messageId: string };
+type Outgoing = {
+  from: string;
+  to: { name: string; address: string };
+  subject: string;
+  text: string;
+  messageId: string;
+};
 type Mailer = { sendMail: (mail: Outgoing & { disableFileAccess: true; disableUrlAccess: true }) => Promise<unknown> };
 
 let mailer: Mailer | null = null;

@@ -23,7 +23,11 @@ export const notebookCodeSchema = z
   .regex(/^[A-Z][A-Z0-9]{0,7}-[0-9]{1,4}$/, 'A code looks like NB-03: letters, a hyphen, a number.');
 
 export const newNotebookSchema = z
-  .object({ code: notebookCodeSchema, title: z.string().trim().min(1, 'A notebook needs a title.').max(200), description: z.string().trim().max(2000) })
+  .object({
+    code: notebookCodeSchema,
+    title: z.string().trim().min(1, 'A notebook needs a title.').max(200),
+    description: z.string().trim().max(2000),
+  })
   .strict();
 
 export type NotebookLine = {
@@ -54,24 +58,49 @@ export async function listNotebooks(personId: string): Promise<NotebookLine[]> {
     .from(notebook)
     .innerJoin(notebookMember, and(eq(notebookMember.notebookId, notebook.id), eq(notebookMember.userId, personId)))
     .orderBy(asc(notebook.code));
-  return rows.map((row) => ({ ...row, leaves: Number(row.leaves), drafts: Number(row.drafts), waiting: Number(row.waiting) }));
+  return rows.map((row) => ({
+    ...row,
+    leaves: Number(row.leaves),
+    drafts: Number(row.drafts),
+    waiting: Number(row.waiting),
+  }));
 }
 
 /** Founds a notebook; whoever does it becomes its lead. */
-export async function foundNotebook(person: Person, input: z.infer<typeof newNotebookSchema>): Promise<{ code: string }> {
+export async function foundNotebook(
+  person: Person,
+  input: z.infer<typeof newNotebookSchema>,
+): Promise<{ code: string }> {
   const db = await getDb();
   await db.transaction(async (tx) => {
     const [known] = await tx.select({ id: notebook.id }).from(notebook).where(eq(notebook.code, input.code));
-    if (known) throw new AppError('conflict', `The code ${input.code} is taken. Choose another number.`, { field: 'code' });
+    if (known)
+      throw new AppError('conflict', `The code ${input.code} is taken. Choose another number.`, { field: 'code' });
     await insertNotebook(tx, { id: randomUUID(), ...input, leadId: person.id });
   });
   return { code: input.code };
 }
 
-export async function insertNotebook(tx: Tx, input: { id: string; code: string; title: string; description: string; leadId: string }): Promise<void> {
-  await tx.insert(notebook).values({ id: input.id, code: input.code, title: input.title, description: input.description, createdBy: input.leadId });
+export async function insertNotebook(
+  tx: Tx,
+  input: { id: string; code: string; title: string; description: string; leadId: string },
+): Promise<void> {
+  await tx
+    .insert(notebook)
+    .values({
+      id: input.id,
+      code: input.code,
+      title: input.title,
+      description: input.description,
+      createdBy: input.leadId,
+    });
   await tx.insert(notebookMember).values({ notebookId: input.id, userId: input.leadId, role: 'lead' });
-  await appendLog(tx, { kind: 'notebook founded', actorId: input.leadId, notebookId: input.id, detail: { code: input.code } });
+  await appendLog(tx, {
+    kind: 'notebook founded',
+    actorId: input.leadId,
+    notebookId: input.id,
+    detail: { code: input.code },
+  });
 }
 
 export const notebookFactsSchema = z
@@ -82,18 +111,28 @@ export const notebookFactsSchema = z
   })
   .strict();
 
-export async function changeNotebook(scope: ScopeOf<'notebook.change'>, facts: z.infer<typeof notebookFactsSchema>): Promise<void> {
+export async function changeNotebook(
+  scope: ScopeOf<'notebook.change'>,
+  facts: z.infer<typeof notebookFactsSchema>,
+): Promise<void> {
   const db = await getDb();
   await db.transaction(async (tx) => {
     await tx.update(notebook).set(facts).where(eq(notebook.id, scope.notebook.id));
-    await appendLog(tx, { kind: 'notebook changed', actorId: scope.person.id, notebookId: scope.notebook.id, detail: facts });
+    await appendLog(tx, {
+      kind: 'notebook changed',
+      actorId: scope.person.id,
+      notebookId: scope.notebook.id,
+      detail: facts,
+    });
   });
 }
 
 export type MemberLine = { person: PersonDto; role: NotebookRole; since: string };
 
 export async function listMembers(notebookId: string): Promise<MemberLine[]> {
-  const rows = await (await getDb())
+  const rows = await (
+    await getDb()
+  )
     .select({ id: user.id, name: user.name, role: notebookMember.role, since: notebookMember.since })
     .from(notebookMember)
     .innerJoin(user, eq(user.id, notebookMember.userId))
@@ -106,34 +145,62 @@ export const addMemberSchema = z.object({ email: emailSchema, role: z.enum(noteb
 export const changeMemberSchema = z.object({ role: z.enum(notebookRoles) }).strict();
 
 /** Adds somebody who has an account, by e-mail address. */
-export async function addMember(scope: ScopeOf<'notebook.change'>, input: z.infer<typeof addMemberSchema>): Promise<void> {
+export async function addMember(
+  scope: ScopeOf<'notebook.change'>,
+  input: z.infer<typeof addMemberSchema>,
+): Promise<void> {
   const db = await getDb();
   await db.transaction(async (tx) => {
     const [person] = await tx.select({ id: user.id, email: user.email }).from(user).where(eq(user.email, input.email));
-    if (!person) throw new AppError('invalid', 'Nobody with this address has an account yet. An administrator sends invitations.', { field: 'email' });
+    if (!person)
+      throw new AppError(
+        'invalid',
+        'Nobody with this address has an account yet. An administrator sends invitations.',
+        { field: 'email' },
+      );
     const added = await tx
       .insert(notebookMember)
       .values({ notebookId: scope.notebook.id, userId: person.id, role: input.role })
       .onConflictDoNothing()
       .returning({ userId: notebookMember.userId });
-    if (added.length === 0) throw new AppError('conflict', 'This person is a member already; change the role in the list.', { field: 'email' });
-    await appendLog(tx, { kind: 'member added', actorId: scope.person.id, notebookId: scope.notebook.id, detail: { person: person.id, role: input.role } });
+    if (added.length === 0)
+      throw new AppError('conflict', 'This person is a member already; change the role in the list.', {
+        field: 'email',
+      });
+    await appendLog(tx, {
+      kind: 'member added',
+      actorId: scope.person.id,
+      notebookId: scope.notebook.id,
+      detail: { person: person.id, role: input.role },
+    });
     await queueMail(tx, {
       to: person.email,
       subject: `You are now ${input.role} in ${scope.notebook.code}`,
-      lines: [`${scope.person.name} has added you to the notebook ${scope.notebook.code}, ${scope.notebook.title}.`, `${env().baseUrl}/notebooks/${scope.notebook.code}`],
+      lines: [
+        `${scope.person.name} has added you to the notebook ${scope.notebook.code}, ${scope.notebook.title}.`,
+        `${env().baseUrl}/notebooks/${scope.notebook.code}`,
+      ],
     });
   });
 }
 
 /** Changes a role or, with null, ends a membership. A notebook keeps at least one lead. */
-export async function changeMember(scope: ScopeOf<'notebook.change'>, userId: string, role: NotebookRole | null): Promise<void> {
+export async function changeMember(
+  scope: ScopeOf<'notebook.change'>,
+  userId: string,
+  role: NotebookRole | null,
+): Promise<void> {
   const db = await getDb();
   await db.transaction(async (tx) => {
-    const members = await tx.select().from(notebookMember).where(eq(notebookMember.notebookId, scope.notebook.id)).for('update');
+    const members = await tx
+      .select()
+      .from(notebookMember)
+      .where(eq(notebookMember.notebookId, scope.notebook.id))
+      .for('update');
     const member = members.find((m) => m.userId === userId);
     if (!member) throw new AppError('not_found', 'This person is not a member.');
-    const leadsLeft = members.filter((m) => m.role === 'lead' && m.userId !== userId).length + (role === 'lead' ? 1 : 0);
+    const leadsLeft =
+      members.filter((m) => m.role === 'lead' && m.userId !== userId).length + (role === 'lead' ? 1 : 0);
     if (leadsLeft === 0) throw new AppError('invalid', 'A notebook needs a lead: appoint another one first.');
     const which = and(eq(notebookMember.notebookId, scope.notebook.id), eq(notebookMember.userId, userId));
     if (role) await tx.update(notebookMember).set({ role }).where(which);
@@ -166,21 +233,45 @@ export async function rescueAppointment(by: Person, code: string, userId: string
       throw new AppError('not_allowed', 'This notebook has a lead: only the lead changes its members.');
     }
     if (!members.some((m) => m.userId === userId)) throw new AppError('invalid', 'Only a member can be appointed.');
-    await tx.update(notebookMember).set({ role: 'lead' }).where(and(eq(notebookMember.notebookId, book.id), eq(notebookMember.userId, userId)));
-    await appendLog(tx, { kind: 'rescue appointment', actorId: by.id, notebookId: book.id, detail: { person: userId } });
-    const addresses = await addressesOf(tx, members.map((m) => m.userId));
+    await tx
+      .update(notebookMember)
+      .set({ role: 'lead' })
+      .where(and(eq(notebookMember.notebookId, book.id), eq(notebookMember.userId, userId)));
+    await appendLog(tx, {
+      kind: 'rescue appointment',
+      actorId: by.id,
+      notebookId: book.id,
+      detail: { person: userId },
+    });
+    const addresses = await addressesOf(
+      tx,
+      members.map((m) => m.userId),
+    );
     const named = (await peopleById(tx, [userId])).get(userId)!;
     for (const to of addresses.values()) {
-      await queueMail(tx, { to, subject: `New lead of ${code}`, lines: [`${by.name}, administrator, has appointed ${named.name} lead of ${code}, which had none.`] });
+      await queueMail(tx, {
+        to,
+        subject: `New lead of ${code}`,
+        lines: [`${by.name}, administrator, has appointed ${named.name} lead of ${code}, which had none.`],
+      });
     }
   });
 }
 
-export type AuditLine = { seq: number; at: string; kind: string; actor: string; entryId: string | null; detail: Record<string, unknown> };
+export type AuditLine = {
+  seq: number;
+  at: string;
+  kind: string;
+  actor: string;
+  entryId: string | null;
+  detail: Record<string, unknown>;
+};
 
 /** The log of one notebook, newest first. */
 export async function readAuditTrail(notebookId: string): Promise<AuditLine[]> {
-  const rows = await (await getDb())
+  const rows = await (
+    await getDb()
+  )
     .select({ record: logRecord, actor: user.name })
     .from(logRecord)
     .leftJoin(user, eq(user.id, logRecord.actorId))

@@ -47,7 +47,12 @@ export async function questionsOf(db: DbOrTx, entryId: string, readerId: string)
   const answers = await db
     .select()
     .from(answer)
-    .where(inArray(answer.questionId, rows.map((row) => row.question.id)))
+    .where(
+      inArray(
+        answer.questionId,
+        rows.map((row) => row.question.id),
+      ),
+    )
     .orderBy(asc(answer.answeredAt));
   const people = await peopleById(db, [...rows.map((r) => r.question.askedBy), ...answers.map((a) => a.answeredBy)]);
   return rows.map(({ question: q, authorId }) => ({
@@ -73,12 +78,21 @@ export async function ask(scope: ScopeOf<'entry.ask'>, input: z.infer<typeof ask
   const { entry: about, person, notebook } = scope;
   const id = await db.transaction(async (tx) => {
     if (input.requestKey) {
-      const [known] = await tx.select({ id: question.id, askedBy: question.askedBy }).from(question).where(eq(question.requestKey, input.requestKey));
+      const [known] = await tx
+        .select({ id: question.id, askedBy: question.askedBy })
+        .from(question)
+        .where(eq(question.requestKey, input.requestKey));
       if (known?.askedBy === person.id) return known.id;
     }
-    const versions = await tx.select({ digest: entryVersion.digest }).from(entryVersion).where(eq(entryVersion.entryId, about.id));
+    const versions = await tx
+      .select({ digest: entryVersion.digest })
+      .from(entryVersion)
+      .where(eq(entryVersion.entryId, about.id));
     if (!versions.some((version) => version.digest === input.versionDigest)) {
-      throw new AppError('invalid', 'The question names a version that this entry does not have. Reload the page; your text is kept.');
+      throw new AppError(
+        'invalid',
+        'The question names a version that this entry does not have. Reload the page; your text is kept.',
+      );
     }
     const made = randomUUID();
     await tx.insert(question).values({
@@ -92,13 +106,23 @@ export async function ask(scope: ScopeOf<'entry.ask'>, input: z.infer<typeof ask
       askedAt: now(),
       requestKey: input.requestKey ?? null,
     });
-    await appendLog(tx, { kind: 'question', actorId: person.id, notebookId: about.notebookId, entryId: about.id, detail: { question: made } });
+    await appendLog(tx, {
+      kind: 'question',
+      actorId: person.id,
+      notebookId: about.notebookId,
+      entryId: about.id,
+      detail: { question: made },
+    });
     const to = (await addressesOf(tx, [about.authorId])).get(about.authorId);
     if (to && about.authorId !== person.id) {
       await queueMail(tx, {
         to,
         subject: `Question on ${notebook.code} leaf ${about.leaf}`,
-        lines: [`${person.name} asks about “${about.title}”:`, input.text, `Answer here: ${env().baseUrl}/entries/${about.id}`],
+        lines: [
+          `${person.name} asks about “${about.title}”:`,
+          input.text,
+          `Answer here: ${env().baseUrl}/entries/${about.id}`,
+        ],
       });
     }
     return made;
@@ -112,19 +136,35 @@ export async function answerQuestion(scope: ScopeOf<'question.answer'>, text: st
   const { person, notebook, entry: about } = scope;
   await db.transaction(async (tx) => {
     const [row] = await tx.select().from(question).where(eq(question.id, scope.questionId)).for('update');
-    if (row.state === 'answered') throw new AppError('conflict', 'This question is answered already. Reload the page to read the answer; your text is kept.');
+    if (row.state === 'answered')
+      throw new AppError(
+        'conflict',
+        'This question is answered already. Reload the page to read the answer; your text is kept.',
+      );
     if (row.askedBy === person.id && about.authorId !== person.id) {
       throw new AppError('not_allowed', 'Somebody else answers your question.');
     }
-    await tx.insert(answer).values({ id: randomUUID(), questionId: row.id, text, answeredBy: person.id, answeredAt: now() });
+    await tx
+      .insert(answer)
+      .values({ id: randomUUID(), questionId: row.id, text, answeredBy: person.id, answeredAt: now() });
     await tx.update(question).set({ state: 'answered' }).where(eq(question.id, row.id));
-    await appendLog(tx, { kind: 'answer', actorId: person.id, notebookId: about.notebookId, entryId: about.id, detail: { question: row.id } });
+    await appendLog(tx, {
+      kind: 'answer',
+      actorId: person.id,
+      notebookId: about.notebookId,
+      entryId: about.id,
+      detail: { question: row.id },
+    });
     const to = (await addressesOf(tx, [row.askedBy])).get(row.askedBy);
     if (to && row.askedBy !== person.id) {
       await queueMail(tx, {
         to,
         subject: `Answer on ${notebook.code} leaf ${about.leaf}`,
-        lines: [`${person.name} answers your question on “${about.title}”:`, text, `Read on: ${env().baseUrl}/entries/${about.id}`],
+        lines: [
+          `${person.name} answers your question on “${about.title}”:`,
+          text,
+          `Read on: ${env().baseUrl}/entries/${about.id}`,
+        ],
       });
     }
   });

@@ -39,14 +39,21 @@ export async function readQueue(personId: string): Promise<QueueLine[]> {
     .innerJoin(notebook, eq(notebook.id, entry.notebookId))
     .innerJoin(
       notebookMember,
-      and(eq(notebookMember.notebookId, entry.notebookId), eq(notebookMember.userId, personId), inArray(notebookMember.role, ['lead', 'author', 'witness'])),
+      and(
+        eq(notebookMember.notebookId, entry.notebookId),
+        eq(notebookMember.userId, personId),
+        inArray(notebookMember.role, ['lead', 'author', 'witness']),
+      ),
     )
     .leftJoin(entryContributor, and(eq(entryContributor.entryId, entry.id), eq(entryContributor.userId, personId)))
     .leftJoin(witnessRequest, and(eq(witnessRequest.entryId, entry.id), eq(witnessRequest.witnessId, personId)))
     .leftJoin(signature, and(eq(signature.entryId, entry.id), eq(signature.kind, 'author')))
     .where(and(eq(entry.state, 'signed'), ne(entry.authorId, personId), isNull(entryContributor.userId)))
     .orderBy(sql`${witnessRequest.id} is null`, asc(signature.signedAt));
-  const people = await peopleById(db, rows.map((row) => row.authorId));
+  const people = await peopleById(
+    db,
+    rows.map((row) => row.authorId),
+  );
   return rows.map(({ authorId, ...row }) => ({
     ...row,
     author: people.get(authorId)!,
@@ -57,7 +64,9 @@ export async function readQueue(personId: string): Promise<QueueLine[]> {
 
 /** How many entries wait for this person by name. */
 export async function countWaiting(personId: string): Promise<number> {
-  const [row] = await (await getDb())
+  const [row] = await (
+    await getDb()
+  )
     .select({ count: sql<number>`count(*)` })
     .from(witnessRequest)
     .innerJoin(entry, and(eq(entry.id, witnessRequest.entryId), eq(entry.state, 'signed')))
@@ -76,9 +85,17 @@ export type TodayDto = {
 /** What the day begins with: own drafts, what waits for this person, running cooldowns, and in notebooks they lead unsigned work by age. */
 export async function readToday(personId: string): Promise<TodayDto> {
   const db = await getDb();
-  const mine = (notebookId: typeof entry.notebookId | typeof cooldown.notebookId) => and(eq(notebookMember.notebookId, notebookId), eq(notebookMember.userId, personId));
+  const mine = (notebookId: typeof entry.notebookId | typeof cooldown.notebookId) =>
+    and(eq(notebookMember.notebookId, notebookId), eq(notebookMember.userId, personId));
   const drafts = await db
-    .select({ id: entry.id, notebook: notebook.code, leaf: entry.leaf, title: entry.title, workDate: entry.workDate, changedAt: entry.changedAt })
+    .select({
+      id: entry.id,
+      notebook: notebook.code,
+      leaf: entry.leaf,
+      title: entry.title,
+      workDate: entry.workDate,
+      changedAt: entry.changedAt,
+    })
     .from(entry)
     .innerJoin(notebook, eq(notebook.id, entry.notebookId))
     .innerJoin(notebookMember, mine(entry.notebookId))
@@ -93,20 +110,36 @@ export async function readToday(personId: string): Promise<TodayDto> {
     .where(and(eq(entry.authorId, personId), eq(question.state, 'open')))
     .orderBy(asc(question.askedAt));
   const cooldowns = await db
-    .select({ id: cooldown.id, name: cooldown.name, cryostat: cooldown.cryostat, startedOn: cooldown.startedOn, baseTemperature: cooldown.baseTemperature })
+    .select({
+      id: cooldown.id,
+      name: cooldown.name,
+      cryostat: cooldown.cryostat,
+      startedOn: cooldown.startedOn,
+      baseTemperature: cooldown.baseTemperature,
+    })
     .from(cooldown)
     .innerJoin(notebookMember, mine(cooldown.notebookId))
     .where(isNull(cooldown.endedOn))
     .orderBy(asc(cooldown.startedOn));
   const unsigned = await db
-    .select({ id: entry.id, notebook: notebook.code, leaf: entry.leaf, title: entry.title, authorId: entry.authorId, workDate: entry.workDate })
+    .select({
+      id: entry.id,
+      notebook: notebook.code,
+      leaf: entry.leaf,
+      title: entry.title,
+      authorId: entry.authorId,
+      workDate: entry.workDate,
+    })
     .from(entry)
     .innerJoin(notebook, eq(notebook.id, entry.notebookId))
     .innerJoin(notebookMember, and(mine(entry.notebookId), eq(notebookMember.role, 'lead')))
     .where(eq(entry.state, 'draft'))
     .orderBy(asc(entry.workDate))
     .limit(50);
-  const people = await peopleById(db, unsigned.map((row) => row.authorId));
+  const people = await peopleById(
+    db,
+    unsigned.map((row) => row.authorId),
+  );
   return {
     drafts: drafts.map((row) => ({ ...row, changedAt: row.changedAt.toISOString() })),
     queue: (await readQueue(personId)).slice(0, 20),

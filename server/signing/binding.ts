@@ -9,20 +9,29 @@ export function unfinished(record: VersionRecord, attached: { id: string; fileNa
   const warnings: string[] = [];
   for (const title of emptySections(doc)) warnings.push(`The section “${title}” is empty.`);
   for (const value of record.values) {
-    if (value.state !== 'ok') warnings.push(`The value ${value.symbol ?? `“${value.source}”`} has no result: ${value.error ?? 'its data is not there yet.'}`);
+    if (value.state !== 'ok')
+      warnings.push(
+        `The value ${value.symbol ?? `“${value.source}”`} has no result: ${value.error ?? 'its data is not there yet.'}`,
+      );
   }
   const usedTexts = record.values.map((value) => value.source).join('\n');
   for (const trace of record.traces) {
-    if (!usedTexts.includes(`${trace.handle}.`)) warnings.push(`The trace ${trace.handle} (${trace.fileName}) is attached and used in no value.`);
+    if (!usedTexts.includes(`${trace.handle}.`))
+      warnings.push(`The trace ${trace.handle} (${trace.fileName}) is attached and used in no value.`);
     const missing = trace.settings.columns.filter((column) => column.unit === null);
-    if (missing.length > 0) warnings.push(`The trace ${trace.handle} has columns without a stated unit: ${missing.map((c) => c.symbol).join(', ')}.`);
+    if (missing.length > 0)
+      warnings.push(
+        `The trace ${trace.handle} has columns without a stated unit: ${missing.map((c) => c.symbol).join(', ')}.`,
+      );
   }
   const placed = new Set([...record.traces.map((t) => t.traceId), ...record.pictures.map((p) => p.pictureId)]);
   for (const file of attached) {
-    if (!placed.has(file.id)) warnings.push(`The file ${file.fileName} was uploaded to this entry and is not in the text.`);
+    if (!placed.has(file.id))
+      warnings.push(`The file ${file.fileName} was uploaded to this entry and is not in the text.`);
   }
   for (const block of doc.content ?? []) {
-    if (block.type === 'caution' && !block.attrs?.acknowledgedAt) warnings.push('The caution at the top is not acknowledged.');
+    if (block.type === 'caution' && !block.attrs?.acknowledgedAt)
+      warnings.push('The caution at the top is not acknowledged.');
   }
   return warnings;
 }
@@ -35,7 +44,8 @@ function emptySections(doc: DocumentJson): string[] {
     const level = Number(block.attrs?.level);
     const rest = blocks.slice(index + 1);
     const end = rest.findIndex((later) => later.type === 'heading' && Number(later.attrs?.level) <= level);
-    if (!(end === -1 ? rest : rest.slice(0, end)).some(hasContent)) empty.push(documentText({ type: 'doc', content: [block] }).trim());
+    if (!(end === -1 ? rest : rest.slice(0, end)).some(hasContent))
+      empty.push(documentText({ type: 'doc', content: [block] }).trim());
   });
   return empty;
 }

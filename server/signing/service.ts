@@ -43,8 +43,14 @@ export async function readBinding(scope: Signable, purpose: Purpose): Promise<Bi
   const { entry: about, person, notebook } = scope;
   const version = await headVersion(db, about.id, about.headSeq);
   const record = readRecord(version.canonical);
-  const [draft] = await db.select({ revision: entryDraft.revision, cutRevision: entryDraft.cutRevision }).from(entryDraft).where(eq(entryDraft.entryId, about.id));
-  const attached = await db.select({ id: trace.id, fileName: trace.fileName }).from(trace).where(eq(trace.entryId, about.id));
+  const [draft] = await db
+    .select({ revision: entryDraft.revision, cutRevision: entryDraft.cutRevision })
+    .from(entryDraft)
+    .where(eq(entryDraft.entryId, about.id));
+  const attached = await db
+    .select({ id: trace.id, fileName: trace.fileName })
+    .from(trace)
+    .where(eq(trace.entryId, about.id));
   const days = daysSince(about.workDate, now(), 'UTC');
   return {
     title: record.title,
@@ -69,7 +75,14 @@ export async function readBinding(scope: Signable, purpose: Purpose): Promise<Bi
 /** Digest of what stands on the page beside the version: the questions with their answers. */
 async function shownDigest(db: DbOrTx, entryId: string, purpose: Purpose, readerId: string): Promise<string> {
   const questions = purpose === 'countersign' ? await questionsOf(db, entryId, readerId) : [];
-  return sealRecord(questions.map((q) => ({ id: q.id, text: q.text, state: q.state, answers: q.answers.map((a) => ({ id: a.id, text: a.text })) }))).digest;
+  return sealRecord(
+    questions.map((q) => ({
+      id: q.id,
+      text: q.text,
+      state: q.state,
+      answers: q.answers.map((a) => ({ id: a.id, text: a.text })),
+    })),
+  ).digest;
 }
 
 /**
@@ -104,18 +117,43 @@ export async function issueChallenge(scope: Signable, purpose: Purpose, versionD
 }
 
 const newerVersion = () =>
-  new AppError('conflict', 'There is a newer version than the one on this page. Nothing was signed; read the newest one first.');
+  new AppError(
+    'conflict',
+    'There is a newer version than the one on this page. Nothing was signed; read the newest one first.',
+  );
 
 /** Checks and uses up the challenge, inside the signing transaction. */
-async function spendChallenge(tx: Tx, person: Person, entryId: string, purpose: Purpose, input: Omit<SignInput, 'password'>): Promise<void> {
+async function spendChallenge(
+  tx: Tx,
+  person: Person,
+  entryId: string,
+  purpose: Purpose,
+  input: Omit<SignInput, 'password'>,
+): Promise<void> {
   const [row] = await tx.select().from(challenge).where(eq(challenge.id, input.challengeId)).for('update');
   const fits =
-    row && row.userId === person.id && row.entryId === entryId && row.purpose === purpose && row.versionDigest === input.versionDigest;
-  if (!fits) throw new AppError('invalid', 'This signing step does not belong to this page. Nothing was signed; reload the page.');
-  if (row.usedAt) throw new AppError('conflict', 'This signing step was used already. Reload the page to see what was signed.');
-  if (row.expiresAt < now()) throw new AppError('gone', 'The page stood open for more than ten minutes. Nothing was signed; reload it and sign again.');
+    row &&
+    row.userId === person.id &&
+    row.entryId === entryId &&
+    row.purpose === purpose &&
+    row.versionDigest === input.versionDigest;
+  if (!fits)
+    throw new AppError(
+      'invalid',
+      'This signing step does not belong to this page. Nothing was signed; reload the page.',
+    );
+  if (row.usedAt)
+    throw new AppError('conflict', 'This signing step was used already. Reload the page to see what was signed.');
+  if (row.expiresAt < now())
+    throw new AppError(
+      'gone',
+      'The page stood open for more than ten minutes. Nothing was signed; reload it and sign again.',
+    );
   if (row.shownDigest !== (await shownDigest(tx, entryId, purpose, person.id))) {
-    throw new AppError('conflict', 'A question or an answer came in while this page was open. Nothing was signed; reload the page and read it.');
+    throw new AppError(
+      'conflict',
+      'A question or an answer came in while this page was open. Nothing was signed; reload the page and read it.',
+    );
   }
   await tx.update(challenge).set({ usedAt: now() }).where(eq(challenge.id, row.id));
 }
@@ -127,7 +165,10 @@ export async function sign(scope: ScopeOf<'entry.sign'>, input: SignInput): Prom
 }
 
 /** As `sign`, for a caller that has checked the signer's secret. */
-export async function signVerified(scope: ScopeOf<'entry.sign'>, input: Omit<SignInput, 'password'>): Promise<SignatureDto> {
+export async function signVerified(
+  scope: ScopeOf<'entry.sign'>,
+  input: Omit<SignInput, 'password'>,
+): Promise<SignatureDto> {
   const { person, notebook } = scope;
   const db = await getDb();
   return db.transaction(async (tx) => {
@@ -137,16 +178,32 @@ export async function signVerified(scope: ScopeOf<'entry.sign'>, input: Omit<Sig
     if (version.digest !== input.versionDigest) throw newerVersion();
     const [draft] = await tx.select().from(entryDraft).where(eq(entryDraft.entryId, about.id));
     if (draft.revision !== draft.cutRevision) {
-      throw new AppError('conflict', 'The draft has changed since this version was cut. Nothing was signed; cut a version of the newest text first.');
+      throw new AppError(
+        'conflict',
+        'The draft has changed since this version was cut. Nothing was signed; cut a version of the newest text first.',
+      );
     }
     await spendChallenge(tx, person, about.id, 'sign', input);
     const at = now();
     const days = daysSince(about.workDate, at, input.zone);
     const late = days > notebook.lateAfterDays;
     if (late && !input.lateReason) {
-      throw new AppError('invalid', `The work was ${days} days ago and the limit is ${notebook.lateAfterDays}. Give the reason for signing late.`, { field: 'lateReason' });
+      throw new AppError(
+        'invalid',
+        `The work was ${days} days ago and the limit is ${notebook.lateAfterDays}. Give the reason for signing late.`,
+        { field: 'lateReason' },
+      );
     }
-    const made = await record(tx, { about, person, notebook: notebook.code, kind: 'author', version, now: at, input, late: late ? { days, limit: notebook.lateAfterDays, reason: input.lateReason } : null });
+    const made = await record(tx, {
+      about,
+      person,
+      notebook: notebook.code,
+      kind: 'author',
+      version,
+      now: at,
+      input,
+      late: late ? { days, limit: notebook.lateAfterDays, reason: input.lateReason } : null,
+    });
     await tx.update(entry).set({ state: 'signed', changedAt: at }).where(eq(entry.id, about.id));
     await askWitnesses(tx, { about, person, code: notebook.code }, input.witnessIds);
     return made;
@@ -160,22 +217,41 @@ export async function countersign(scope: ScopeOf<'entry.countersign'>, input: Si
 }
 
 /** As `countersign`, for a caller that has checked the signer's secret. */
-export async function countersignVerified(scope: ScopeOf<'entry.countersign'>, input: Omit<SignInput, 'password'>): Promise<SignatureDto> {
+export async function countersignVerified(
+  scope: ScopeOf<'entry.countersign'>,
+  input: Omit<SignInput, 'password'>,
+): Promise<SignatureDto> {
   const { person, notebook } = scope;
   const db = await getDb();
   return db.transaction(async (tx) => {
     const [about] = await tx.select().from(entry).where(eq(entry.id, scope.entry.id)).for('update');
-    if (about.state !== 'signed') throw new AppError('conflict', 'Somebody else countersigned this entry at that moment. Nothing more is needed.');
+    if (about.state !== 'signed')
+      throw new AppError('conflict', 'Somebody else countersigned this entry at that moment. Nothing more is needed.');
     const version = await headVersion(tx, about.id, about.headSeq);
     if (version.digest !== input.versionDigest) throw newerVersion();
     const obstacle = await countersignObstacle(tx, about, person.id);
     if (obstacle) throw new AppError('not_allowed', obstacle);
     await spendChallenge(tx, person, about.id, 'countersign', input);
     const at = now();
-    const made = await record(tx, { about, person, notebook: notebook.code, kind: 'witness', version, now: at, input, late: null });
+    const made = await record(tx, {
+      about,
+      person,
+      notebook: notebook.code,
+      kind: 'witness',
+      version,
+      now: at,
+      input,
+      late: null,
+    });
     await tx.update(entry).set({ state: 'witnessed', changedAt: at }).where(eq(entry.id, about.id));
-    await tx.update(witnessRequest).set({ closedAt: at }).where(and(eq(witnessRequest.entryId, about.id), isNull(witnessRequest.closedAt)));
-    const leads = await tx.select({ id: notebookMember.userId }).from(notebookMember).where(and(eq(notebookMember.notebookId, about.notebookId), eq(notebookMember.role, 'lead')));
+    await tx
+      .update(witnessRequest)
+      .set({ closedAt: at })
+      .where(and(eq(witnessRequest.entryId, about.id), isNull(witnessRequest.closedAt)));
+    const leads = await tx
+      .select({ id: notebookMember.userId })
+      .from(notebookMember)
+      .where(and(eq(notebookMember.notebookId, about.notebookId), eq(notebookMember.role, 'lead')));
     const addresses = await addressesOf(tx, [about.authorId, person.id, ...leads.map((lead) => lead.id)]);
     for (const to of addresses.values()) {
       await queueMail(tx, {
@@ -204,7 +280,13 @@ type Recording = {
 };
 
 async function record(tx: Tx, r: Recording): Promise<SignatureDto> {
-  const authors = r.kind === 'witness' ? await tx.select().from(signature).where(and(eq(signature.versionDigest, r.version.digest), eq(signature.kind, 'author'))) : [];
+  const authors =
+    r.kind === 'witness'
+      ? await tx
+          .select()
+          .from(signature)
+          .where(and(eq(signature.versionDigest, r.version.digest), eq(signature.kind, 'author')))
+      : [];
   const statement = sealRecord({
     format: 'kelvinleaf-statement',
     number: 1,
@@ -269,40 +351,75 @@ export async function signaturesOf(db: DbOrTx, entryId: string): Promise<Signatu
   return rows.map(toSignatureDto);
 }
 
-async function askWitnesses(tx: Tx, on: { about: typeof entry.$inferSelect; person: Person; code: string }, ids: string[]): Promise<void> {
+async function askWitnesses(
+  tx: Tx,
+  on: { about: typeof entry.$inferSelect; person: Person; code: string },
+  ids: string[],
+): Promise<void> {
   const { about, person, code } = on;
   if (ids.length === 0) return;
   const members = await tx
     .select({ id: notebookMember.userId })
     .from(notebookMember)
-    .where(and(eq(notebookMember.notebookId, about.notebookId), inArray(notebookMember.userId, ids), inArray(notebookMember.role, ['lead', 'author', 'witness'])));
-  const wrote = await tx.select({ id: entryContributor.userId }).from(entryContributor).where(eq(entryContributor.entryId, about.id));
+    .where(
+      and(
+        eq(notebookMember.notebookId, about.notebookId),
+        inArray(notebookMember.userId, ids),
+        inArray(notebookMember.role, ['lead', 'author', 'witness']),
+      ),
+    );
+  const wrote = await tx
+    .select({ id: entryContributor.userId })
+    .from(entryContributor)
+    .where(eq(entryContributor.entryId, about.id));
   const barred = new Set([about.authorId, ...wrote.map((c) => c.id)]);
   for (const id of new Set(ids)) {
     if (barred.has(id) || !members.some((member) => member.id === id)) {
-      throw new AppError('invalid', 'A witness must be a lead, author or witness of this notebook who took no part in the entry. Nothing was signed; choose another.', { field: 'witnessIds' });
+      throw new AppError(
+        'invalid',
+        'A witness must be a lead, author or witness of this notebook who took no part in the entry. Nothing was signed; choose another.',
+        { field: 'witnessIds' },
+      );
     }
-    await tx.insert(witnessRequest).values({ id: randomUUID(), entryId: about.id, witnessId: id, requestedBy: person.id }).onConflictDoNothing();
+    await tx
+      .insert(witnessRequest)
+      .values({ id: randomUUID(), entryId: about.id, witnessId: id, requestedBy: person.id })
+      .onConflictDoNothing();
     const to = (await addressesOf(tx, [id])).get(id);
     if (to) {
       await queueMail(tx, {
         to,
         subject: `Please countersign ${code} leaf ${about.leaf}`,
-        lines: [`${person.name} has signed “${about.title}” and asks you to countersign it.`, `Read it here: ${env().baseUrl}/entries/${about.id}`],
+        lines: [
+          `${person.name} has signed “${about.title}” and asks you to countersign it.`,
+          `Read it here: ${env().baseUrl}/entries/${about.id}`,
+        ],
       });
     }
   }
-  await appendLog(tx, { kind: 'witness asked', actorId: person.id, notebookId: about.notebookId, entryId: about.id, detail: { witnesses: ids } });
+  await appendLog(tx, {
+    kind: 'witness asked',
+    actorId: person.id,
+    notebookId: about.notebookId,
+    entryId: about.id,
+    detail: { witnesses: ids },
+  });
 }
 
 /** The author asks further colleagues after signing. */
 export async function requestWitnesses(scope: ScopeOf<'entry.requestWitness'>, ids: string[]): Promise<void> {
   const db = await getDb();
-  await db.transaction((tx) => askWitnesses(tx, { about: scope.entry, person: scope.person, code: scope.notebook.code }, ids));
+  await db.transaction((tx) =>
+    askWitnesses(tx, { about: scope.entry, person: scope.person, code: scope.notebook.code }, ids),
+  );
 }
 
 /** How many of the head version's traces this person has been served. */
-export async function tracesSeen(db: DbOrTx, about: typeof entry.$inferSelect, personId: string): Promise<{ traces: number; of: number }> {
+export async function tracesSeen(
+  db: DbOrTx,
+  about: typeof entry.$inferSelect,
+  personId: string,
+): Promise<{ traces: number; of: number }> {
   if (about.headSeq === 0) return { traces: 0, of: 0 };
   const version = await headVersion(db, about.id, about.headSeq);
   const wanted = new Set(readRecord(version.canonical).traces.map((t) => t.traceId));
@@ -314,13 +431,23 @@ export async function tracesSeen(db: DbOrTx, about: typeof entry.$inferSelect, p
 }
 
 /** Why this person cannot countersign now, as a sentence; null when nothing stands in the way. Rights are decided elsewhere. */
-export async function countersignObstacle(db: DbOrTx, about: typeof entry.$inferSelect, personId: string): Promise<string | null> {
-  const open = await db.select({ id: question.id }).from(question).where(and(eq(question.entryId, about.id), eq(question.state, 'open')));
+export async function countersignObstacle(
+  db: DbOrTx,
+  about: typeof entry.$inferSelect,
+  personId: string,
+): Promise<string | null> {
+  const open = await db
+    .select({ id: question.id })
+    .from(question)
+    .where(and(eq(question.entryId, about.id), eq(question.state, 'open')));
   if (open.length > 0) {
-    return open.length === 1 ? 'One question is open: countersigning waits for its answer.' : `${open.length} questions are open: countersigning waits for their answers.`;
+    return open.length === 1
+      ? 'One question is open: countersigning waits for its answer.'
+      : `${open.length} questions are open: countersigning waits for their answers.`;
   }
   const seen = await tracesSeen(db, about, personId);
-  if (seen.traces < seen.of) return `You have seen ${seen.traces} of ${seen.of} traces of this version: open the others first.`;
+  if (seen.traces < seen.of)
+    return `You have seen ${seen.traces} of ${seen.of} traces of this version: open the others first.`;
   return null;
 }
 
@@ -332,7 +459,10 @@ export async function noteServed(personId: string, about: typeof entry.$inferSel
     .select({ digest: entryVersion.digest })
     .from(entryVersion)
     .where(and(eq(entryVersion.entryId, about.id), eq(entryVersion.seq, about.headSeq)));
-  await db.insert(traceServed).values({ versionDigest: version.digest, traceId, userId: personId, servedAt: now() }).onConflictDoNothing();
+  await db
+    .insert(traceServed)
+    .values({ versionDigest: version.digest, traceId, userId: personId, servedAt: now() })
+    .onConflictDoNothing();
 }
 
 export async function readObstacle(scope: ScopeOf<'entry.countersign'>): Promise<string | null> {
@@ -341,6 +471,11 @@ export async function readObstacle(scope: ScopeOf<'entry.countersign'>): Promise
 
 /** Revision of the draft that a version would be cut from. */
 export async function readRevision(entryId: string): Promise<number> {
-  const [draft] = await (await getDb()).select({ revision: entryDraft.revision }).from(entryDraft).where(eq(entryDraft.entryId, entryId));
+  const [draft] = await (
+    await getDb()
+  )
+    .select({ revision: entryDraft.revision })
+    .from(entryDraft)
+    .where(eq(entryDraft.entryId, entryId));
   return draft.revision;
 }

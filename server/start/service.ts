@@ -70,7 +70,9 @@ export async function startServer(): Promise<void> {
 }
 
 function startSentence(start: { replayed: number; restoredCopy: string | null; reason: string | null }): string {
-  const copy = start.restoredCopy ? `${start.reason ?? ''} The last good copy of the database was put in its place. ` : '';
+  const copy = start.restoredCopy
+    ? `${start.reason ?? ''} The last good copy of the database was put in its place. `
+    : '';
   const replay =
     start.replayed > 0
       ? `${start.replayed} changes that the database did not hold were taken from the journal. Nothing that was acknowledged is missing.`
@@ -82,7 +84,10 @@ function startSentence(start: { replayed: number; restoredCopy: string | null; r
 async function noteStart(sentence: string): Promise<void> {
   const db = await getDb();
   const value = { at: new Date().toISOString(), sentence };
-  await db.insert(setting).values({ key: 'last-recovery', value }).onConflictDoUpdate({ target: setting.key, set: { value } });
+  await db
+    .insert(setting)
+    .values({ key: 'last-recovery', value })
+    .onConflictDoUpdate({ target: setting.key, set: { value } });
 }
 
 const say = (line: string) => process.stdout.write(`${line}\n`);
@@ -99,7 +104,11 @@ async function firstContent(): Promise<void> {
   }
   const [known] = await db.select().from(setting).where(eq(setting.key, 'first-link'));
   if (known) say('The link for the first administrator was printed at an earlier start; here is a new one.');
-  const { link } = await invite(null, { email: 'administrator@first.invalid', name: 'First administrator', role: 'administrator' });
+  const { link } = await invite(null, {
+    email: 'administrator@first.invalid',
+    name: 'First administrator',
+    role: 'administrator',
+  });
   await db.insert(setting).values({ key: 'first-link', value: true }).onConflictDoNothing();
   say(`First administrator: open ${link}`);
 }

@@ -25,7 +25,11 @@ it('gives leaf numbers in order and one entry for a repeated request', async () 
   const body = newEntry('First day');
   const first = await call<{ id: string; leaf: number }>(createEntry, { as: author, params: { code: 'NB-01' }, body });
   const again = await call<{ id: string; leaf: number }>(createEntry, { as: author, params: { code: 'NB-01' }, body });
-  const second = await call<{ leaf: number }>(createEntry, { as: author, params: { code: 'NB-01' }, body: newEntry('Second') });
+  const second = await call<{ leaf: number }>(createEntry, {
+    as: author,
+    params: { code: 'NB-01' },
+    body: newEntry('Second'),
+  });
   expect(first.status).toBe(200);
   expect(again.body).toEqual(first.body);
   expect(second.body.leaf).toBe(first.body.leaf + 1);
@@ -33,7 +37,11 @@ it('gives leaf numbers in order and one entry for a repeated request', async () 
 
 it('keeps both texts apart when a save is based on an older revision', async () => {
   const { author } = laboratory.people;
-  const { body: made } = await call<{ id: string }>(createEntry, { as: author, params: { code: 'NB-01' }, body: newEntry('Draft') });
+  const { body: made } = await call<{ id: string }>(createEntry, {
+    as: author,
+    params: { code: 'NB-01' },
+    body: newEntry('Draft'),
+  });
   const params = { id: made.id };
   const { body: draft } = await call<DraftDto>(getDraft, { as: author, params });
   const save = (basedOn: number, text: string) =>
@@ -44,7 +52,10 @@ it('keeps both texts apart when a save is based on an older revision', async () 
       body: {
         basedOn,
         title: 'Draft',
-        doc: { type: 'doc', content: [{ type: 'paragraph', attrs: { id: 'block-one' }, content: [{ type: 'text', text }] }] },
+        doc: {
+          type: 'doc',
+          content: [{ type: 'paragraph', attrs: { id: 'block-one' }, content: [{ type: 'text', text }] }],
+        },
         written: { 'block-one': '2031-03-04T09:00:00+01:00' },
         clockOffsetMs: 0,
         saveId: randomUUID(),

@@ -39,7 +39,9 @@ export async function startLaboratory(environment: Record<string, string> = {}) 
   const db = await getDb();
   const make = async (name: string, role: 'member' | 'administrator' = 'member'): Promise<TestPerson> => {
     const email = `${name.toLowerCase().replace(/\W+/g, '.')}@laboratory.example`;
-    const id = await db.transaction((tx) => createAccount(tx, { email, name, role, passwordHash: hash, actorId: null }));
+    const id = await db.transaction((tx) =>
+      createAccount(tx, { email, name, role, passwordHash: hash, actorId: null }),
+    );
     return { id, name, email, cookie: '' };
   };
   const people = {
@@ -53,7 +55,13 @@ export async function startLaboratory(environment: Record<string, string> = {}) 
   };
   const notebookId = randomUUID();
   await db.transaction(async (tx) => {
-    await insertNotebook(tx, { id: notebookId, code: 'NB-01', title: 'Pumps', description: '', leadId: people.lead.id });
+    await insertNotebook(tx, {
+      id: notebookId,
+      code: 'NB-01',
+      title: 'Pumps',
+      description: '',
+      leadId: people.lead.id,
+    });
     const members: [TestPerson, NotebookRole][] = [
       [people.author, 'author'],
       [people.second, 'author'],
@@ -113,7 +121,12 @@ export async function call<T = Record<string, unknown>>(route: Route, options: C
     new Request(`${origin}${options.url ?? '/api/test'}`, {
       method,
       headers,
-      body: options.body === undefined ? undefined : typeof options.body === 'string' ? options.body : JSON.stringify(options.body),
+      body:
+        options.body === undefined
+          ? undefined
+          : typeof options.body === 'string'
+            ? options.body
+            : JSON.stringify(options.body),
     }),
     { params: Promise.resolve(options.params ?? {}) },
   );

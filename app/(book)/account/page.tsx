@@ -24,7 +24,9 @@ export default async function AccountPage() {
               ['Role here', person.role],
             ]}
           />
-          <p className="mt-2 text-sm text-quiet">The printed name stands on signatures; an administrator invites anew where it has to change.</p>
+          <p className="mt-2 text-sm text-quiet">
+            The printed name stands on signatures; an administrator invites anew where it has to change.
+          </p>
         </section>
         <section>
           <h2 className="mb-2">Password</h2>

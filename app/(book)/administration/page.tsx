@@ -15,7 +15,8 @@ export default async function AdministrationPage() {
       <h1>Administration</h1>
       {recovery ? (
         <AttentionSentence>
-          At the start of <span className="figures">{recovery.at.slice(0, 16).replace('T', ' ')}</span> UTC: {recovery.sentence}
+          At the start of <span className="figures">{recovery.at.slice(0, 16).replace('T', ' ')}</span> UTC:{' '}
+          {recovery.sentence}
         </AttentionSentence>
       ) : null}
       <section className="mt-6">

@@ -11,7 +11,9 @@ export default async function QueuePage() {
   return (
     <>
       <h1>Countersign</h1>
-      <p className="my-2 max-w-2xl text-quiet">Signed entries of others in which you took no part. Those for which you were asked by name come first.</p>
+      <p className="my-2 max-w-2xl text-quiet">
+        Signed entries of others in which you took no part. Those for which you were asked by name come first.
+      </p>
       <Suspense>
         <QueueTable lines={await readQueue(person.id)} />
       </Suspense>

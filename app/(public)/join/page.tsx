@@ -25,7 +25,11 @@ export default async function JoinPage({ searchParams }: { searchParams: Promise
   return (
     <section className="max-w-sm">
       <h1>Join the notebook</h1>
-      <p className="my-4">{first ? 'You become the first administrator of this installation.' : `Your account will be ${invitation.email}.`}</p>
+      <p className="my-4">
+        {first
+          ? 'You become the first administrator of this installation.'
+          : `Your account will be ${invitation.email}.`}
+      </p>
       <JoinForm token={secret} name={first ? '' : invitation.name} askEmail={first} />
     </section>
   );

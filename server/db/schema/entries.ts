@@ -1,4 +1,16 @@
-import { bigint, date, index, integer, jsonb, pgTable, primaryKey, text, timestamp, unique, uuid } from 'drizzle-orm/pg-core';
+import {
+  bigint,
+  date,
+  index,
+  integer,
+  jsonb,
+  pgTable,
+  primaryKey,
+  text,
+  timestamp,
+  unique,
+  uuid,
+} from 'drizzle-orm/pg-core';
 import type { DocumentJson } from '@/lib/document/json';
 import type { BlockStamps, EntryState } from '@/lib/schemas/entry';
 import { bytea } from './bytea';

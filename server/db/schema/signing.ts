@@ -5,7 +5,10 @@ import { user } from './people';
 
 const time = (name: string) => timestamp(name, { withTimezone: true, mode: 'date' });
 const person = (name: string) => text(name).references(() => user.id);
-const ofEntry = () => uuid('entry_id').notNull().references(() => entry.id);
+const ofEntry = () =>
+  uuid('entry_id')
+    .notNull()
+    .references(() => entry.id);
 
 export const witnessRequest = pgTable(
   'witness_request',

@@ -27,18 +27,39 @@ export default async function CooldownPage({ params }: { params: Promise<{ id: s
       <section aria-label="Facts" className="mt-4 max-w-3xl">
         <Facts
           facts={[
-            ['Notebook', <Link key="n" href={`/notebooks/${cooldown.notebook}`}>{cooldown.notebook}</Link>],
+            [
+              'Notebook',
+              <Link key="n" href={`/notebooks/${cooldown.notebook}`}>
+                {cooldown.notebook}
+              </Link>,
+            ],
             ['Cryostat', cooldown.cryostat],
-            ['From', <span key="s" className="figures">{cooldown.startedOn}</span>],
-            ['To', cooldown.endedOn ? <span key="e" className="figures">{cooldown.endedOn}</span> : 'running'],
+            [
+              'From',
+              <span key="s" className="figures">
+                {cooldown.startedOn}
+              </span>,
+            ],
+            [
+              'To',
+              cooldown.endedOn ? (
+                <span key="e" className="figures">
+                  {cooldown.endedOn}
+                </span>
+              ) : (
+                'running'
+              ),
+            ],
             ['Base temperature', cooldown.baseTemperature],
             [
               'Devices',
-              cooldown.devices.length === 0 ? '' : cooldown.devices.map((d) => (
-                <Link key={d.id} href={`/devices/${d.id}`} className="mr-3">
-                  {d.name}
-                </Link>
-              )),
+              cooldown.devices.length === 0
+                ? ''
+                : cooldown.devices.map((d) => (
+                    <Link key={d.id} href={`/devices/${d.id}`} className="mr-3">
+                      {d.name}
+                    </Link>
+                  )),
             ],
             ['Remarks', cooldown.remarks],
           ]}
@@ -46,13 +67,17 @@ export default async function CooldownPage({ params }: { params: Promise<{ id: s
       </section>
       <section className="mt-8">
         <h2>Lines</h2>
-        {cooldown.lines.length === 0 ? <p className="text-quiet">No line is entered.</p> : (
+        {cooldown.lines.length === 0 ? (
+          <p className="text-quiet">No line is entered.</p>
+        ) : (
           <div className="overflow-x-auto" tabIndex={0} role="region" aria-label="Lines">
             <table className="table-plain">
               <thead>
                 <tr>
                   {['Line', 'Gate or contact', 'Attenuation', 'Filter', 'Bias tee', 'Instrument'].map((title) => (
-                    <th key={title} scope="col">{title}</th>
+                    <th key={title} scope="col">
+                      {title}
+                    </th>
                   ))}
                 </tr>
               </thead>
@@ -75,13 +100,22 @@ export default async function CooldownPage({ params }: { params: Promise<{ id: s
       <section className="mt-8">
         <h2>Entries of this cooldown</h2>
         <Suspense>
-          <EntryTable entries={entries} caption="Entries of this cooldown" empty="No entry belongs to this cooldown yet." withNotebook />
+          <EntryTable
+            entries={entries}
+            caption="Entries of this cooldown"
+            empty="No entry belongs to this cooldown yet."
+            withNotebook
+          />
         </Suspense>
       </section>
       {writes ? (
         <details className="mt-8 max-w-3xl">
           <summary className="press cursor-pointer list-none">Change the cooldown</summary>
-          <CooldownForm code={cooldown.notebook} cooldown={cooldown} devices={devices.map(({ id: deviceId, name }) => ({ id: deviceId, name }))} />
+          <CooldownForm
+            code={cooldown.notebook}
+            cooldown={cooldown}
+            devices={devices.map(({ id: deviceId, name }) => ({ id: deviceId, name }))}
+          />
         </details>
       ) : null}
     </>

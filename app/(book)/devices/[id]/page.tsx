@@ -25,7 +25,12 @@ export default async function DevicePage({ params }: { params: Promise<{ id: str
         <section aria-label="Facts">
           <Facts
             facts={[
-              ['Notebook', <Link key="n" href={`/notebooks/${device.notebook}`}>{device.notebook}</Link>],
+              [
+                'Notebook',
+                <Link key="n" href={`/notebooks/${device.notebook}`}>
+                  {device.notebook}
+                </Link>,
+              ],
               ['Material', device.material],
               ['Lot', device.lot],
               ['Wafer', device.wafer],
@@ -34,26 +39,34 @@ export default async function DevicePage({ params }: { params: Promise<{ id: str
               ['Remarks', device.remarks],
               [
                 'Cooldowns',
-                device.cooldowns.length === 0 ? '' : device.cooldowns.map((c) => (
-                  <Link key={c.id} href={`/cooldowns/${c.id}`} className="mr-3">
-                    {c.name}
-                  </Link>
-                )),
+                device.cooldowns.length === 0
+                  ? ''
+                  : device.cooldowns.map((c) => (
+                      <Link key={c.id} href={`/cooldowns/${c.id}`} className="mr-3">
+                        {c.name}
+                      </Link>
+                    )),
               ],
             ]}
           />
         </section>
         <section>
           <h2>Gates</h2>
-          {device.gates.length === 0 ? <p className="text-quiet">No gate is entered.</p> : (
+          {device.gates.length === 0 ? (
+            <p className="text-quiet">No gate is entered.</p>
+          ) : (
             <div className="overflow-x-auto" tabIndex={0} role="region" aria-label="Gates">
               <table className="table-plain">
                 <thead>
                   <tr>
                     <th scope="col">Name</th>
                     <th scope="col">Purpose</th>
-                    <th scope="col" className="!text-right">Width / nm</th>
-                    <th scope="col" className="!text-right">Length / nm</th>
+                    <th scope="col" className="!text-right">
+                      Width / nm
+                    </th>
+                    <th scope="col" className="!text-right">
+                      Length / nm
+                    </th>
                   </tr>
                 </thead>
                 <tbody>
@@ -74,7 +87,12 @@ export default async function DevicePage({ params }: { params: Promise<{ id: str
       <section className="mt-10">
         <h2>Entries on this device</h2>
         <Suspense>
-          <EntryTable entries={entries} caption="Entries on this device" empty="No entry names this device yet." withNotebook />
+          <EntryTable
+            entries={entries}
+            caption="Entries on this device"
+            empty="No entry names this device yet."
+            withNotebook
+          />
         </Suspense>
       </section>
       {notebook.role === 'lead' || notebook.role === 'author' ? (

@@ -5,4 +5,6 @@ import { requestReset } from '@/server/auth/service';
 
 const bodySchema = z.object({ email: emailSchema }).strict();
 
-export const POST = withAccess({ action: 'public', body: bodySchema }, ({ request, body }) => requestReset(request.headers, body.email));
+export const POST = withAccess({ action: 'public', body: bodySchema }, ({ request, body }) =>
+  requestReset(request.headers, body.email),
+);

@@ -6,7 +6,12 @@ import { acceptInvitation } from '@/server/accounts/service';
 import { signIn } from '@/server/auth/service';
 
 const bodySchema = z
-  .object({ token: z.string().min(1).max(200), name: personNameSchema, password: passwordSchema, email: emailSchema.optional() })
+  .object({
+    token: z.string().min(1).max(200),
+    name: personNameSchema,
+    password: passwordSchema,
+    email: emailSchema.optional(),
+  })
   .strict();
 
 export const POST = withAccess({ action: 'public', body: bodySchema }, async ({ request, body }) => {

@@ -5,4 +5,6 @@ import { resetPassword } from '@/server/auth/service';
 
 const bodySchema = z.object({ token: z.string().min(1).max(200), password: passwordSchema }).strict();
 
-export const POST = withAccess({ action: 'public', body: bodySchema }, ({ request, body }) => resetPassword(request.headers, body));
+export const POST = withAccess({ action: 'public', body: bodySchema }, ({ request, body }) =>
+  resetPassword(request.headers, body),
+);

@@ -21,7 +21,13 @@ export default async function CountersignPage({ params }: { params: Promise<{ id
       <h1 className="mb-4">Countersign leaf {binding.leaf}</h1>
       <div className="grid gap-8 lg:grid-cols-[1fr_24rem]">
         <Binding binding={binding} />
-        <div>{obstacle ? <AttentionSentence>{obstacle}</AttentionSentence> : <SigningForm entryId={id} purpose="countersign" binding={binding} />}</div>
+        <div>
+          {obstacle ? (
+            <AttentionSentence>{obstacle}</AttentionSentence>
+          ) : (
+            <SigningForm entryId={id} purpose="countersign" binding={binding} />
+          )}
+        </div>
       </div>
     </>
   );

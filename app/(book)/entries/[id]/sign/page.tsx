@@ -31,7 +31,9 @@ export default async function SignPage({ params }: { params: Promise<{ id: strin
       <h1 className="mb-4">Sign leaf {binding.leaf}</h1>
       {binding.draftIsNewer ? (
         <AttentionSentence>
-          <p className="mb-2">The draft has changed since version {binding.seq} was cut; what stands below is the older text.</p>
+          <p className="mb-2">
+            The draft has changed since version {binding.seq} was cut; what stands below is the older text.
+          </p>
           <CutVersion entryId={id} revision={binding.revision} />
         </AttentionSentence>
       ) : null}

@@ -25,7 +25,12 @@ export default async function MembersPage({ params }: { params: Promise<{ code: 
         {lead ? (
           <section>
             <h2 className="mb-3">About the notebook</h2>
-            <NotebookFacts code={code} title={notebook.title} description={about?.description ?? ''} lateAfterDays={notebook.lateAfterDays} />
+            <NotebookFacts
+              code={code}
+              title={notebook.title}
+              description={about?.description ?? ''}
+              lateAfterDays={notebook.lateAfterDays}
+            />
           </section>
         ) : null}
       </div>

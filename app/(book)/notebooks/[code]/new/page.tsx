@@ -18,7 +18,10 @@ export default async function NewEntryPage({ params }: { params: Promise<{ code:
       <h1>New entry</h1>
       <NewEntryForm
         code={code}
-        cooldowns={cooldowns.map(({ id, name, cryostat, endedOn }) => ({ id, name: `${name}, ${cryostat}${endedOn ? ' (ended)' : ''}` }))}
+        cooldowns={cooldowns.map(({ id, name, cryostat, endedOn }) => ({
+          id,
+          name: `${name}, ${cryostat}${endedOn ? ' (ended)' : ''}`,
+        }))}
         devices={devices.map(({ id, name }) => ({ id, name }))}
         layouts={await listLayouts(notebook.id)}
       />

@@ -5,7 +5,10 @@ import { changeAccount } from '@/server/accounts/service';
 
 const bodySchema = z.object({ disabled: z.boolean().optional(), role: z.enum(installationRoles).optional() }).strict();
 
-export const PATCH = withAccess({ action: 'installation.administer', body: bodySchema }, async ({ scope, params, body }) => {
-  await changeAccount(scope.person, params.accountId, body);
-  return null;
-});
+export const PATCH = withAccess(
+  { action: 'installation.administer', body: bodySchema },
+  async ({ scope, params, body }) => {
+    await changeAccount(scope.person, params.accountId, body);
+    return null;
+  },
+);

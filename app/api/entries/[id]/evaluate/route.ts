@@ -8,11 +8,27 @@ const bodySchema = z
   .object({
     cells: z
       .array(
-        z.object({ id: z.string().max(64), source: z.string().max(2000), unit: z.string().max(60).nullable(), digits: z.number().int().min(1).max(4).nullable() }).strict(),
+        z
+          .object({
+            id: z.string().max(64),
+            source: z.string().max(2000),
+            unit: z.string().max(60).nullable(),
+            digits: z.number().int().min(1).max(4).nullable(),
+          })
+          .strict(),
       )
       .max(2000),
     traces: z
-      .array(z.object({ traceId: z.uuid(), handle: handleSchema, settings: traceSettingsSchema, spans: z.array(spanSchema).max(200) }).strict())
+      .array(
+        z
+          .object({
+            traceId: z.uuid(),
+            handle: handleSchema,
+            settings: traceSettingsSchema,
+            spans: z.array(spanSchema).max(200),
+          })
+          .strict(),
+      )
       .max(200),
   })
   .strict();

@@ -4,4 +4,6 @@ import { createEntry, listEntries, newEntrySchema } from '@/server/entries/servi
 export const GET = withAccess({ action: 'notebook.read', param: 'code' }, async ({ scope }) => ({
   entries: await listEntries(scope.person.id, { notebookId: scope.notebook.id }),
 }));
-export const POST = withAccess({ action: 'entry.create', param: 'code', body: newEntrySchema }, ({ scope, body }) => createEntry(scope, body));
+export const POST = withAccess({ action: 'entry.create', param: 'code', body: newEntrySchema }, ({ scope, body }) =>
+  createEntry(scope, body),
+);

@@ -1,4 +1,6 @@
 import { withAccess } from '@/server/access/route';
 import { readAuditTrail } from '@/server/notebooks/service';
 
-export const GET = withAccess({ action: 'notebook.audit', param: 'code' }, async ({ scope }) => ({ records: await readAuditTrail(scope.notebook.id) }));
+export const GET = withAccess({ action: 'notebook.audit', param: 'code' }, async ({ scope }) => ({
+  records: await readAuditTrail(scope.notebook.id),
+}));
