@@ -96,7 +96,9 @@ async function runWorker(task: IngestTask, limits: IngestLimits): Promise<Ingest
       late = true;
       void worker.terminate();
     }, limits.seconds * 1000);
+    let settled = false;
     const settle = (result: IngestResult) => {
+      settled = true;
       clearTimeout(timer);
       resolve(result);
     };
@@ -106,6 +108,9 @@ async function runWorker(task: IngestTask, limits: IngestLimits): Promise<Ingest
       else if (error.code === 'ENOSPC') settle({ ok: false, problem: 'The disk is full: the file is kept, but its columns could not be written. Make room and read it again.' });
       else settle(died('failed unexpectedly', error));
     });
-    worker.on('exit', () => settle(died(late ? `took longer than ${limits.seconds} s` : 'ended without a result')));
+    worker.on('exit', () => {
+      if (settled) return;
+      settle(died(late ? `took longer than ${limits.seconds} s` : 'ended without a result'));
+    });
   });
 }

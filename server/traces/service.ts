@@ -11,6 +11,7 @@ import { getDb } from '@/server/db/client';
 import { user } from '@/server/db/schema/people';
 import { report } from '@/server/diagnostics/report';
 import { env } from '@/server/env/env';
+import { enqueueJob } from '@/server/jobs/service';
 import { appendLog } from '@/server/log/service';
 import { blobHead, hasBlob, storeBlob, sweepBlobs } from './blobs';
 import { readFacts, ingestBlob, type IngestLimits } from './ingest';
@@ -75,6 +76,8 @@ export async function receiveFile(file: ReceivedFile): Promise<UploadOutcome> {
       entryId,
       detail: { traceId: id, kind, fileName, bytes, sha256 },
     });
+    // The job does it should this process end first; reading twice does no harm.
+    if (kind === 'trace') await enqueueJob(tx, 'ingest trace', `ingest trace ${id}`, { traceId: id });
     return true;
   });
   if (!isNew) {
@@ -83,7 +86,7 @@ export async function receiveFile(file: ReceivedFile): Promise<UploadOutcome> {
     return { traceId: first.id, state: first.state };
   }
   if (kind === 'picture') return { traceId: id, state };
-  const reading = ingestTrace(id).catch((error: unknown) => {
+  const reading = readReceived(id).catch((error: unknown) => {
     report('a received file could not be read', { traceId: id }, error);
     return 'received' as const;
   });
@@ -97,7 +100,11 @@ function later<T>(value: T): Promise<T> {
 /**
  * Parses the file of a trace and records its columns, or a sentence why it cannot be read. Doing it again changes nothing.
  */
-export async function ingestTrace(id: string, limits?: IngestLimits): Promise<'received' | 'parsed' | 'unreadable'> {
+export async function ingestTrace(id: string, limits?: IngestLimits): Promise<void> {
+  await readReceived(id, limits);
+}
+
+async function readReceived(id: string, limits?: IngestLimits): Promise<'received' | 'parsed' | 'unreadable'> {
   const db = await getDb();
   const row = await queries.findTrace(db, id);
   if (!row || row.state !== 'received') return row?.state ?? 'unreadable';
@@ -122,7 +129,7 @@ export async function ingestTrace(id: string, limits?: IngestLimits): Promise<'r
   return result.ok ? 'parsed' : 'unreadable';
 }
 
-/** At start-up: files that were received and not yet read are read, and what a crash left in the store is removed. */
+/** At start-up or in the hourly tidying: files that were received and not yet read are read, and what a crash left in the store is removed. */
 export async function settleTraces(): Promise<{ read: number; swept: number }> {
   const db = await getDb();
   let read = 0;
