@@ -24,11 +24,19 @@ function checkSignature(config: UploadServiceConfig, base: string, path: string,
     throw new ServiceRefusal(403, 'The address was changed: its signature does not match. Start the upload again.');
   }
   const expires = Number(params.get('expires'));
-  if (!(expires > Date.now())) throw new ServiceRefusal(403, 'The address has expired. Start the upload again; what arrived is kept.');
+  if (!(expires > Date.now()))
+    throw new ServiceRefusal(403, 'The address has expired. Start the upload again; what arrived is kept.');
   return params;
 }
 
-export type UploadAddress = { key: string; name: string; size: number; type: string; slug: string; customId: string | null };
+export type UploadAddress = {
+  key: string;
+  name: string;
+  size: number;
+  type: string;
+  slug: string;
+  customId: string | null;
+};
 
 /** Reads and checks the address of an upload. Values are encoded twice on the way here. */
 export function readUploadAddress(config: UploadServiceConfig, key: string, search: string): UploadAddress {
@@ -37,7 +45,8 @@ export function readUploadAddress(config: UploadServiceConfig, key: string, sear
     const once = params.get(`x-ut-${name}`);
     return once === null ? null : decodeURIComponent(once);
   };
-  if (value('identifier') !== config.appId) throw new ServiceRefusal(403, 'The address belongs to another application.');
+  if (value('identifier') !== config.appId)
+    throw new ServiceRefusal(403, 'The address belongs to another application.');
   const size = Number(value('file-size'));
   if (!Number.isSafeInteger(size) || size < 0) throw new ServiceRefusal(400, 'The address states no size.');
   return {

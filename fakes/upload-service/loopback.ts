@@ -18,7 +18,8 @@ export async function serveOnLoopback(
       .then(async (response) => {
         outgoing.writeHead(response.status, Object.fromEntries(response.headers));
         const reader = method === 'HEAD' ? null : response.body?.getReader();
-        for (let part = await reader?.read(); part && !part.done; part = await reader?.read()) outgoing.write(part.value);
+        for (let part = await reader?.read(); part && !part.done; part = await reader?.read())
+          outgoing.write(part.value);
         outgoing.end();
       })
       .catch((error: unknown) => outgoing.destroy(error instanceof Error ? error : new Error(String(error))));

@@ -33,7 +33,10 @@ export async function receiveBody(
   const held = (await store.size(store.part(key))) ?? 0;
   const start = rangeStart(request.headers.get('range'));
   if (start !== held) {
-    throw new ServiceRefusal(409, `The service holds ${held} bytes, the upload went on from ${start}. Ask how many are held and resume there.`);
+    throw new ServiceRefusal(
+      409,
+      `The service holds ${held} bytes, the upload went on from ${start}. Ask how many are held and resume there.`,
+    );
   }
   const announced = Number(request.headers.get('content-length'));
   if (announced > size - start + multipartOverhead) throw tooLong(size);
@@ -42,7 +45,10 @@ export async function receiveBody(
     throw new ServiceRefusal(400, 'The upload must be a multipart form with one file.');
   }
   if ((await store.total()) - held + size > config.quotaBytes) {
-    throw new ServiceRefusal(507, 'The space for uploads is used up. Nothing of this file was kept; ask the administrator to make room.');
+    throw new ServiceRefusal(
+      507,
+      'The space for uploads is used up. Nothing of this file was kept; ask the administrator to make room.',
+    );
   }
 
   const md5 = createHash('md5');
@@ -75,7 +81,10 @@ export async function receiveBody(
 }
 
 function tooLong(size: number): ServiceRefusal {
-  return new ServiceRefusal(413, `More than the declared ${size} bytes were sent. Nothing was kept; start the upload again.`);
+  return new ServiceRefusal(
+    413,
+    `More than the declared ${size} bytes were sent. Nothing was kept; start the upload again.`,
+  );
 }
 
 /** What is left of a failed upload: a part that can be resumed, or nothing. */
@@ -83,7 +92,10 @@ async function afterFailure(store: UploadStore, key: string, error: unknown): Pr
   const code = error instanceof Error && 'code' in error ? error.code : null;
   if (code === 'ENOSPC' || code === 'EDQUOT' || code === 'EFBIG') {
     await rm(store.part(key), { force: true });
-    return new ServiceRefusal(507, 'The disk is full. Nothing of this file was kept; make room and start the upload again.');
+    return new ServiceRefusal(
+      507,
+      'The disk is full. Nothing of this file was kept; make room and start the upload again.',
+    );
   }
   if (error instanceof ServiceRefusal && error.status === 413) await rm(store.part(key), { force: true });
   return error;
@@ -97,7 +109,7 @@ function rangeStart(header: string | null): number {
 
 async function hashHeld(handle: FileHandle, held: number, update: (bytes: Uint8Array) => void): Promise<void> {
   const buffer = Buffer.alloc(1 << 20);
-  for (let at = 0; at < held; ) {
+  for (let at = 0; at < held;) {
     const { bytesRead } = await handle.read(buffer, 0, Math.min(buffer.length, held - at), at);
     if (bytesRead === 0) throw new Error('the part is shorter than its size');
     update(buffer.subarray(0, bytesRead));
@@ -114,9 +126,15 @@ async function readFilePart(
 ): Promise<void> {
   let parser: busboy.Busboy;
   try {
-    parser = busboy({ headers: { 'content-type': contentType }, limits: { files: 1, fields: 0, parts: 1, headerPairs: 20 } });
+    parser = busboy({
+      headers: { 'content-type': contentType },
+      limits: { files: 1, fields: 0, parts: 1, headerPairs: 20 },
+    });
   } catch (error) {
-    throw new ServiceRefusal(400, `The multipart form cannot be read: ${error instanceof Error ? error.message : String(error)}`);
+    throw new ServiceRefusal(
+      400,
+      `The multipart form cannot be read: ${error instanceof Error ? error.message : String(error)}`,
+    );
   }
   const reader = body.getReader();
   const began = Date.now();
@@ -130,7 +148,12 @@ async function readFilePart(
   const closed = new Promise<void>((resolve) => {
     parser.on('close', resolve);
     parser.on('error', (error) => {
-      fail(new ServiceRefusal(400, `The upload broke off: ${error instanceof Error ? error.message : String(error)}. What arrived is kept; resume it.`));
+      fail(
+        new ServiceRefusal(
+          400,
+          `The upload broke off: ${error instanceof Error ? error.message : String(error)}. What arrived is kept; resume it.`,
+        ),
+      );
       resolve();
     });
   });
@@ -154,10 +177,15 @@ async function readFilePart(
       const elapsed = Date.now() - began;
       if (elapsed > config.idleMs && received < (elapsed - config.idleMs) * leastRate) throw tooSlow();
       // A parser that is behind is waited for, so that no more than its buffer lies in memory.
-      if (!parser.write(value)) await Promise.race([new Promise((resolve) => parser.once('drain', resolve)), closed, writing]);
+      if (!parser.write(value))
+        await Promise.race([new Promise((resolve) => parser.once('drain', resolve)), closed, writing]);
     }
   } catch (error) {
-    fail(error instanceof ServiceRefusal ? error : new ServiceRefusal(400, 'The connection broke off. What arrived is kept; resume the upload.'));
+    fail(
+      error instanceof ServiceRefusal
+        ? error
+        : new ServiceRefusal(400, 'The connection broke off. What arrived is kept; resume the upload.'),
+    );
   }
   // The rest of the body is not read: the answer to a refusal closes the connection.
   if (writeFailed) {

@@ -36,7 +36,8 @@ async function dispatch(request: Request, config: UploadServiceConfig): Promise<
 
   if (request.method === 'POST') {
     const given = request.headers.get('x-uploadthing-api-key') ?? '';
-    if (!sameText(given, config.apiKey)) throw new ServiceRefusal(401, 'The key of the application is missing or wrong.');
+    if (!sameText(given, config.apiKey))
+      throw new ServiceRefusal(401, 'The key of the application is missing or wrong.');
     const body = await readBody(request);
     switch (path) {
       case 'route-metadata':
@@ -55,7 +56,8 @@ async function dispatch(request: Request, config: UploadServiceConfig): Promise<
   const read = /^a\/([^/]+)\/([^/]+)$/.exec(path);
   if (request.method === 'GET' && read) {
     const [, appId, key] = read as unknown as [string, string, string];
-    if (appId !== config.appId || !UploadStore.isKey(key)) throw new ServiceRefusal(404, 'Nothing lies at this address.');
+    if (appId !== config.appId || !UploadStore.isKey(key))
+      throw new ServiceRefusal(404, 'Nothing lies at this address.');
     checkReadAddress(config, key, url.search);
     return serve(store, key);
   }
@@ -67,7 +69,11 @@ async function dispatch(request: Request, config: UploadServiceConfig): Promise<
   }
   if (request.method === 'PUT') {
     const address = readUploadAddress(config, path, url.search);
-    if (busy.has(path)) throw new ServiceRefusal(409, 'This file is being received already. Wait for it, or resume it when it has broken off.');
+    if (busy.has(path))
+      throw new ServiceRefusal(
+        409,
+        'This file is being received already. Wait for it, or resume it when it has broken off.',
+      );
     busy.add(path);
     try {
       return json(await receive(config, store, address, request));
@@ -87,7 +93,8 @@ async function readBody(request: Request): Promise<Record<string, unknown>> {
   } catch {
     throw new ServiceRefusal(400, 'The request is no JSON.');
   }
-  if (typeof body !== 'object' || body === null || Array.isArray(body)) throw new ServiceRefusal(400, 'The request is no JSON object.');
+  if (typeof body !== 'object' || body === null || Array.isArray(body))
+    throw new ServiceRefusal(400, 'The request is no JSON object.');
   return body as Record<string, unknown>;
 }
 
@@ -101,7 +108,12 @@ async function register(store: UploadStore, body: Record<string, unknown>): Prom
   if (typeof callbackUrl !== 'string' || typeof callbackSlug !== 'string') {
     throw new ServiceRefusal(400, 'The registration names no callback.');
   }
-  const registration: Registration = { metadata, callbackUrl, callbackSlug, awaitServerData: awaitServerData !== false };
+  const registration: Registration = {
+    metadata,
+    callbackUrl,
+    callbackSlug,
+    awaitServerData: awaitServerData !== false,
+  };
   for (const key of keysOf(body.fileKeys)) {
     const known = await store.read(key);
     // A file that the application has acknowledged keeps what it was received with.
@@ -140,7 +152,8 @@ async function deleteFiles(store: UploadStore, body: Record<string, unknown>) {
   const keys = keysOf(body.fileKeys);
   if (Array.isArray(body.customIds)) {
     const wanted = new Set(body.customIds);
-    for (const { key, address } of await store.records()) if (address?.customId && wanted.has(address.customId)) keys.push(key);
+    for (const { key, address } of await store.records())
+      if (address?.customId && wanted.has(address.customId)) keys.push(key);
   }
   let deletedCount = 0;
   for (const key of keys) if (await store.remove(key)) deletedCount += 1;
@@ -183,9 +196,13 @@ async function serve(store: UploadStore, key: string): Promise<Response> {
 async function receive(config: UploadServiceConfig, store: UploadStore, address: UploadAddress, request: Request) {
   const { key, name, size, type, customId } = address;
   const known = await store.read(key);
-  if (!known?.registration) throw new ServiceRefusal(404, 'The application has not announced this file. Start the upload again.');
+  if (!known?.registration)
+    throw new ServiceRefusal(404, 'The application has not announced this file. Start the upload again.');
   // The key carries only some 31 bits of hash: two uploads may meet in one.
-  if (known.address && (known.address.customId !== customId || known.address.size !== size || known.address.name !== name)) {
+  if (
+    known.address &&
+    (known.address.customId !== customId || known.address.size !== size || known.address.name !== name)
+  ) {
     throw new ServiceRefusal(409, 'Another upload holds this key. Rename the file and start again.');
   }
   if (known.acknowledged) throw new ServiceRefusal(409, 'This file has been received already.');
@@ -205,17 +222,27 @@ async function receive(config: UploadServiceConfig, store: UploadStore, address:
 
 async function callBack(config: UploadServiceConfig, store: UploadStore, record: FileRecord): Promise<unknown> {
   const { key, registration, address } = record;
-  if (!registration || !address) throw new ServiceRefusal(500, 'The registration of this file is lost. Start the upload again.');
+  if (!registration || !address)
+    throw new ServiceRefusal(500, 'The registration of this file is lost. Start the upload again.');
   const ufsUrl = `${config.baseUrl}/a/${config.appId}/${key}`;
   const payload = JSON.stringify({
     status: 'uploaded',
     metadata: registration.metadata ?? {},
     origin: config.baseUrl,
-    file: { ...address, key, lastModified: record.uploadedAt, url: ufsUrl, appUrl: ufsUrl, ufsUrl, fileHash: record.fileHash },
+    file: {
+      ...address,
+      key,
+      lastModified: record.uploadedAt,
+      url: ufsUrl,
+      appUrl: ufsUrl,
+      ufsUrl,
+      fileHash: record.fileHash,
+    },
   });
   const target = new URL(registration.callbackUrl);
   target.searchParams.set('slug', registration.callbackSlug);
-  const failed = 'The file arrived and is kept, but the application did not take it in. Resume the upload to try again.';
+  const failed =
+    'The file arrived and is kept, but the application did not take it in. Resume the upload to try again.';
   let answer: Response;
   try {
     answer = await fetch(target, {
@@ -250,6 +277,10 @@ async function callBack(config: UploadServiceConfig, store: UploadStore, record:
 function json(body: object, status = 200, close = false): Response {
   return Response.json(body, {
     status,
-    headers: { 'cache-control': 'no-store', 'x-content-type-options': 'nosniff', ...(close ? { connection: 'close' } : {}) },
+    headers: {
+      'cache-control': 'no-store',
+      'x-content-type-options': 'nosniff',
+      ...(close ? { connection: 'close' } : {}),
+    },
   });
 }

@@ -116,7 +116,8 @@ export class UploadStore {
   /** Bytes that files and parts take. */
   async total(): Promise<number> {
     let sum = 0;
-    for (const name of await this.names()) sum += (await this.size(path.join(/* turbopackIgnore: true */ this.folder, name))) ?? 0;
+    for (const name of await this.names())
+      sum += (await this.size(path.join(/* turbopackIgnore: true */ this.folder, name))) ?? 0;
     return sum;
   }
 

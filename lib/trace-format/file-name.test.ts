@@ -28,7 +28,9 @@ describe('names of attached files', () => {
     // The two encodings of these examples follow RFC 8187: `£ rates` and `€ rates`.
     expect(attachmentHeader('£ rates')).toContain("filename*=UTF-8''%C2%A3%20rates");
     expect(attachmentHeader('€ rates')).toContain("filename*=UTF-8''%E2%82%AC%20rates");
-    expect(attachmentHeader('a"; filename=evil.html')).toMatch(/^attachment; filename="[^"\\\r\n]*"; filename\*=UTF-8''[A-Za-z0-9!#$&+.^_`|~%-]*$/);
+    expect(attachmentHeader('a"; filename=evil.html')).toMatch(
+      /^attachment; filename="[^"\\\r\n]*"; filename\*=UTF-8''[A-Za-z0-9!#$&+.^_`|~%-]*$/,
+    );
     expect(attachmentHeader('con.csv')).toContain('filename="_con.csv"');
     expect(attachmentHeader('a\r\nX: y.csv')).not.toMatch(/[\r\n]/);
   });

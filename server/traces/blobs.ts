@@ -29,7 +29,10 @@ export function blobPath(sha256: string): string {
  * Takes a stream into the store and compares it with what the browser declared.
  * @throws AppError invalid (another digest or size; nothing is kept), storage_full.
  */
-export async function storeBlob(stream: AsyncIterable<Uint8Array>, declared: { sha256: string; bytes: number }): Promise<void> {
+export async function storeBlob(
+  stream: AsyncIterable<Uint8Array>,
+  declared: { sha256: string; bytes: number },
+): Promise<void> {
   const target = blobPath(declared.sha256);
   await fs.mkdir(folder(), { recursive: true, mode: 0o700 });
   const draft = path.join(/* turbopackIgnore: true */ folder(), `.${randomBytes(9).toString('hex')}.new`);
@@ -49,7 +52,10 @@ export async function storeBlob(stream: AsyncIterable<Uint8Array>, declared: { s
       await handle.close();
     }
     if (bytes !== declared.bytes) {
-      throw new AppError('invalid', `Not the declared ${declared.bytes} bytes arrived. Nothing was kept; attach the file again.`);
+      throw new AppError(
+        'invalid',
+        `Not the declared ${declared.bytes} bytes arrived. Nothing was kept; attach the file again.`,
+      );
     }
     if (hash.digest('hex') !== declared.sha256) {
       throw new AppError(
@@ -63,7 +69,11 @@ export async function storeBlob(stream: AsyncIterable<Uint8Array>, declared: { s
     await fs.rm(draft, { force: true });
     const code = error instanceof Error && 'code' in error ? error.code : null;
     if (code === 'ENOSPC' || code === 'EDQUOT') {
-      throw new AppError('storage_full', 'The disk is full. Nothing of this file was kept; make room and attach it again.', { cause: error });
+      throw new AppError(
+        'storage_full',
+        'The disk is full. Nothing of this file was kept; make room and attach it again.',
+        { cause: error },
+      );
     }
     throw error;
   }
@@ -94,7 +104,10 @@ export async function hasBlob(sha256: string): Promise<boolean> {
  * @param isReferred whether a record names the digest
  * @param olderThanMs younger files may belong to an upload that is just being recorded
  */
-export async function sweepBlobs(isReferred: (sha256: string) => Promise<boolean>, olderThanMs = 3_600_000): Promise<number> {
+export async function sweepBlobs(
+  isReferred: (sha256: string) => Promise<boolean>,
+  olderThanMs = 3_600_000,
+): Promise<number> {
   let removed = 0;
   const names = await fs.readdir(folder()).catch((error: NodeJS.ErrnoException) => {
     if (error.code === 'ENOENT') return [];

@@ -52,7 +52,11 @@ export async function readColumn(sha256: string, index: number, from = 0, to?: n
 }
 
 /** Rows `from` to `from + count` of every column, null where a sample is missing. */
-export async function readRows(sha256: string, from: number, count: number): Promise<{ from: number; total: number; rows: (number | null)[][] }> {
+export async function readRows(
+  sha256: string,
+  from: number,
+  count: number,
+): Promise<{ from: number; total: number; rows: (number | null)[][] }> {
   const { rows: total, columns } = await factsOf(sha256);
   const start = Math.min(total, from);
   const end = Math.min(total, from + count);
@@ -85,7 +89,12 @@ export async function readView(
   }
 }
 
-async function fileSource(sha256: string, trace: ParsedTrace, index: number, opened: fs.FileHandle[]): Promise<SampleSource> {
+async function fileSource(
+  sha256: string,
+  trace: ParsedTrace,
+  index: number,
+  opened: fs.FileHandle[],
+): Promise<SampleSource> {
   const column = trace.columns[index];
   if (!column) throw noColumn();
   const folder = derivedFolder(sha256);
@@ -104,7 +113,7 @@ async function fileSource(sha256: string, trace: ParsedTrace, index: number, ope
     samplesAt: async (rows) => {
       const out = new Float64Array(rows.length);
       // Rows that follow one another are read in one piece.
-      for (let i = 0; i < rows.length; ) {
+      for (let i = 0; i < rows.length;) {
         let run = 1;
         while (i + run < rows.length && rows[i + run] === (rows[i] as number) + run) run += 1;
         out.set(await readSamples(samples, rows[i] as number, (rows[i] as number) + run), i);
@@ -112,6 +121,7 @@ async function fileSource(sha256: string, trace: ParsedTrace, index: number, ope
       }
       return out;
     },
-    entries: (level, from, to) => readSamples(pyramid, (starts[level] as number) + 2 * from, (starts[level] as number) + 2 * to),
+    entries: (level, from, to) =>
+      readSamples(pyramid, (starts[level] as number) + 2 * from, (starts[level] as number) + 2 * to),
   };
 }

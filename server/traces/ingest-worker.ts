@@ -13,7 +13,7 @@ function asBytes(samples: Float64Array): Uint8Array {
 }
 
 function writeWhole(fd: number, bytes: Uint8Array): void {
-  for (let done = 0; done < bytes.length; ) done += fs.writeSync(fd, bytes, done, bytes.length - done);
+  for (let done = 0; done < bytes.length;) done += fs.writeSync(fd, bytes, done, bytes.length - done);
 }
 
 function writeFile(file: string, write: (fd: number) => void): void {
@@ -32,7 +32,10 @@ function ingest({ source, target }: IngestTask): IngestResult {
   try {
     const parser = new TextTraceParser((block, rows) => {
       while (columns.length < block.length) {
-        columns.push({ fd: fs.openSync(columnFile(target, columns.length), 'wx', 0o600), pyramid: new PyramidBuilder() });
+        columns.push({
+          fd: fs.openSync(columnFile(target, columns.length), 'wx', 0o600),
+          pyramid: new PyramidBuilder(),
+        });
       }
       block.forEach((samples, i) => {
         const { fd, pyramid } = columns[i] as { fd: number; pyramid: PyramidBuilder };

@@ -105,7 +105,12 @@ async function runWorker(task: IngestTask, limits: IngestLimits): Promise<Ingest
     worker.on('message', (result: IngestResult) => settle(result));
     worker.on('error', (error: Error & { code?: string }) => {
       if (error.code === 'ERR_WORKER_OUT_OF_MEMORY') settle(died('needed more memory than is allowed', error));
-      else if (error.code === 'ENOSPC') settle({ ok: false, problem: 'The disk is full: the file is kept, but its columns could not be written. Make room and read it again.' });
+      else if (error.code === 'ENOSPC')
+        settle({
+          ok: false,
+          problem:
+            'The disk is full: the file is kept, but its columns could not be written. Make room and read it again.',
+        });
       else settle(died('failed unexpectedly', error));
     });
     worker.on('exit', () => {

@@ -11,8 +11,10 @@ export const derivedForm = 1;
 
 export type DerivedFacts = { form: number; trace: ParsedTrace };
 
-export const columnFile = (folder: string, index: number) => path.join(/* turbopackIgnore: true */ folder, `c${index}.f64`);
-export const pyramidFile = (folder: string, index: number) => path.join(/* turbopackIgnore: true */ folder, `p${index}.f64`);
+export const columnFile = (folder: string, index: number) =>
+  path.join(/* turbopackIgnore: true */ folder, `c${index}.f64`);
+export const pyramidFile = (folder: string, index: number) =>
+  path.join(/* turbopackIgnore: true */ folder, `p${index}.f64`);
 export const factsFile = (folder: string) => path.join(/* turbopackIgnore: true */ folder, 'parse.json');
 
 export type IngestTask = { source: string; target: string };

@@ -11,7 +11,10 @@ export async function findTrace(db: DbOrTx, id: string): Promise<TraceRow | null
   return row ?? null;
 }
 
-export async function findUpload(db: DbOrTx, by: { personId: string; entryId: string; uploadId: string }): Promise<TraceRow | null> {
+export async function findUpload(
+  db: DbOrTx,
+  by: { personId: string; entryId: string; uploadId: string },
+): Promise<TraceRow | null> {
   const [row] = await db
     .select()
     .from(trace)

@@ -67,7 +67,20 @@ export async function receiveFile(file: ReceivedFile): Promise<UploadOutcome> {
   const { kind, notebookId, entryId, personId, uploadId, fileName, bytes, sha256 } = file;
   const state = kind === 'picture' ? ('parsed' as const) : ('received' as const);
   const isNew = await db.transaction(async (tx) => {
-    const row = { id, notebookId, entryId, kind, fileName, mediaType, bytes, sha256, state, uploadId, uploadedBy: personId, receivedAt: now() };
+    const row = {
+      id,
+      notebookId,
+      entryId,
+      kind,
+      fileName,
+      mediaType,
+      bytes,
+      sha256,
+      state,
+      uploadId,
+      uploadedBy: personId,
+      receivedAt: now(),
+    };
     if (!(await queries.insertTrace(tx, row))) return false;
     await appendLog(tx, {
       kind: 'trace received',
@@ -82,7 +95,8 @@ export async function receiveFile(file: ReceivedFile): Promise<UploadOutcome> {
   });
   if (!isNew) {
     const first = await queries.findUpload(db, file);
-    if (!first) throw new AppError('conflict', 'This upload was recorded and is gone again. Attach the file once more.');
+    if (!first)
+      throw new AppError('conflict', 'This upload was recorded and is gone again. Attach the file once more.');
     return { traceId: first.id, state: first.state };
   }
   if (kind === 'picture') return { traceId: id, state };
@@ -124,7 +138,12 @@ async function readReceived(id: string, limits?: IngestLimits): Promise<'receive
       minimum: column.min === null ? null : String(column.min),
       maximum: column.max === null ? null : String(column.max),
     }));
-    await queries.settleTrace(tx, id, { state: 'parsed', problem: null, rows: trace.rows, comments: trace.comments }, columns);
+    await queries.settleTrace(
+      tx,
+      id,
+      { state: 'parsed', problem: null, rows: trace.rows, comments: trace.comments },
+      columns,
+    );
   });
   return result.ok ? 'parsed' : 'unreadable';
 }
@@ -154,7 +173,8 @@ export type TraceDetail = TraceDto & {
 export async function traceDetail(id: string): Promise<TraceDetail> {
   const db = await getDb();
   const row = await queries.findTrace(db, id);
-  if (!row || row.kind !== 'trace') throw new AppError('not_found', 'There is nothing here, or it is not for you to see.');
+  if (!row || row.kind !== 'trace')
+    throw new AppError('not_found', 'There is nothing here, or it is not for you to see.');
   const columns = await queries.columnsOf(db, id);
   const [uploader] = await db.select({ name: user.name }).from(user).where(eq(user.id, row.uploadedBy));
   const facts = row.state === 'parsed' ? await readFacts(row.sha256) : null;
@@ -184,11 +204,17 @@ export async function traceDetail(id: string): Promise<TraceDetail> {
 }
 
 /** The stored file of a trace or picture, for serving. */
-export async function storedFile(id: string, kind: 'trace' | 'picture'): Promise<{ sha256: string; bytes: number; fileName: string; mediaType: string }> {
+export async function storedFile(
+  id: string,
+  kind: 'trace' | 'picture',
+): Promise<{ sha256: string; bytes: number; fileName: string; mediaType: string }> {
   const row = await queries.findTrace(await getDb(), id);
   if (!row || row.kind !== kind) throw new AppError('not_found', 'There is nothing here, or it is not for you to see.');
   if (!(await hasBlob(row.sha256))) {
-    throw new AppError('unavailable', `The bytes of "${row.fileName}" are missing from the data folder. Its record and digest are kept; restore the file from a backup.`);
+    throw new AppError(
+      'unavailable',
+      `The bytes of "${row.fileName}" are missing from the data folder. Its record and digest are kept; restore the file from a backup.`,
+    );
   }
   const { sha256, bytes, fileName, mediaType } = row;
   return { sha256, bytes, fileName, mediaType };
@@ -197,13 +223,19 @@ export async function storedFile(id: string, kind: 'trace' | 'picture'): Promise
 /** The digest that a parsed trace's columns are read by. */
 export async function parsedDigest(id: string): Promise<string> {
   const row = await queries.findTrace(await getDb(), id);
-  if (!row || row.kind !== 'trace') throw new AppError('not_found', 'There is nothing here, or it is not for you to see.');
-  if (row.state !== 'parsed') throw new AppError('conflict', row.problem ?? 'The file is still being read. Try again in a moment.');
+  if (!row || row.kind !== 'trace')
+    throw new AppError('not_found', 'There is nothing here, or it is not for you to see.');
+  if (row.state !== 'parsed')
+    throw new AppError('conflict', row.problem ?? 'The file is still being read. Try again in a moment.');
   return row.sha256;
 }
 
 /** Whether an upload of this person has arrived: asked before sending a file again whose answer was lost. */
-export async function receivedUpload(by: { personId: string; entryId: string; uploadId: string }): Promise<UploadOutcome | null> {
+export async function receivedUpload(by: {
+  personId: string;
+  entryId: string;
+  uploadId: string;
+}): Promise<UploadOutcome | null> {
   const row = await queries.findUpload(await getDb(), by);
   return row ? { traceId: row.id, state: row.state } : null;
 }

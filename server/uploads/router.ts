@@ -5,7 +5,14 @@ import { createUploadthing, UploadThingError, UTFiles, type FileRouter } from 'u
 import { z } from 'zod';
 import { AppError } from '@/lib/errors/app-error';
 import { initialsOf } from '@/lib/schemas/person';
-import { maxPictureBytes, maxTraceBytes, sha256Schema, uploadIdSchema, uploadInputSchema, type UploadOutcome } from '@/lib/schemas/upload';
+import {
+  maxPictureBytes,
+  maxTraceBytes,
+  sha256Schema,
+  uploadIdSchema,
+  uploadInputSchema,
+  type UploadOutcome,
+} from '@/lib/schemas/upload';
 import { cleanFileName } from '@/lib/trace-format/file-name';
 import { findPerson, type Person } from '@/server/access/person';
 import { authorise } from '@/server/access/scope';
@@ -16,7 +23,13 @@ import { receiveFile, roomLeft } from '@/server/traces/service';
 import { uploadApi } from './sdk';
 
 /** What travels through the upload service with each file, signed by our key. */
-const fileSchema = z.object({ customId: z.string(), uploadId: uploadIdSchema, sha256: sha256Schema, name: z.string(), bytes: z.number() });
+const fileSchema = z.object({
+  customId: z.string(),
+  uploadId: uploadIdSchema,
+  sha256: sha256Schema,
+  name: z.string(),
+  bytes: z.number(),
+});
 const metadataSchema = z.object({ personId: z.string(), entryId: z.uuid(), files: z.array(fileSchema) });
 
 const codes = { 403: 'FORBIDDEN', 404: 'NOT_FOUND' } as const;
@@ -28,15 +41,24 @@ function asUploadError(error: unknown): UploadThingError {
     return new UploadThingError({ code, message: error.message });
   }
   report('upload could not begin', {}, error);
-  return new UploadThingError({ code: 'INTERNAL_SERVER_ERROR', message: 'The upload could not begin. Nothing was sent; try again.' });
+  return new UploadThingError({
+    code: 'INTERNAL_SERVER_ERROR',
+    message: 'The upload could not begin. Nothing was sent; try again.',
+  });
 }
 
 type Announced = readonly { name: string; size: number; type: string }[];
 
-async function begin(kind: 'trace' | 'picture', request: Request, input: z.infer<typeof uploadInputSchema>, announced: Announced) {
+async function begin(
+  kind: 'trace' | 'picture',
+  request: Request,
+  input: z.infer<typeof uploadInputSchema>,
+  announced: Announced,
+) {
   const person = await findPerson(request.headers);
   await authorise('entry.write', person, input.entryId);
-  if (input.files.length !== announced.length) throw new AppError('invalid', 'Every file needs its digest. Attach the files again.');
+  if (input.files.length !== announced.length)
+    throw new AppError('invalid', 'Every file needs its digest. Attach the files again.');
   const limit = kind === 'trace' ? maxTraceBytes : maxPictureBytes;
   let total = 0;
   for (const { name, size } of announced) {
@@ -52,7 +74,10 @@ async function begin(kind: 'trace' | 'picture', request: Request, input: z.infer
     total += size;
   }
   if (total > (await roomLeft())) {
-    throw new AppError('storage_full', 'The space for files is used up. Nothing was sent; ask the administrator to make room.');
+    throw new AppError(
+      'storage_full',
+      'The space for files is used up. Nothing was sent; ask the administrator to make room.',
+    );
   }
   const personId = (person as Person).id;
   const files = announced.map(({ name, size }, i) => {
@@ -74,12 +99,23 @@ async function personById(id: string): Promise<Person | null> {
   const [row] = await (await getDb()).select().from(user).where(eq(user.id, id));
   if (!row || row.disabledAt) return null;
   const { name, email } = row;
-  return { id, name, email, initials: initialsOf(name), role: 'member', twoFactor: false, by: 'session', sessionId: null, sessionStartedAt: null };
+  return {
+    id,
+    name,
+    email,
+    initials: initialsOf(name),
+    role: 'member',
+    twoFactor: false,
+    by: 'session',
+    sessionId: null,
+    sessionStartedAt: null,
+  };
 }
 
 async function* bytesOf(address: string): AsyncGenerator<Uint8Array> {
   const response = await fetch(address, { cache: 'no-store' });
-  if (!response.ok || !response.body) throw new Error(`the upload service answered ${response.status} to a signed read`);
+  if (!response.ok || !response.body)
+    throw new Error(`the upload service answered ${response.status} to a signed read`);
   const reader = response.body.getReader();
   for (let part = await reader.read(); !part.done; part = await reader.read()) yield part.value;
 }
@@ -113,7 +149,10 @@ async function complete(
   } catch (error) {
     if (error instanceof AppError) return { error: error.message };
     report('upload could not be received', { kind }, error);
-    return { error: 'The file arrived but could not be taken in. It is kept by the upload service; resume the upload to try again.' };
+    return {
+      error:
+        'The file arrived but could not be taken in. It is kept by the upload service; resume the upload to try again.',
+    };
   } finally {
     discardLater(file.key);
   }
@@ -132,7 +171,11 @@ function discardLater(key: string): void {
 const f = createUploadthing({ errorFormatter: (error) => ({ message: error.message }) });
 const routeOptions = {
   awaitServerData: true,
-  getFileHashParts: (file: { customId?: string | null; name: string; size: number }) => [file.customId, file.name, file.size],
+  getFileHashParts: (file: { customId?: string | null; name: string; size: number }) => [
+    file.customId,
+    file.name,
+    file.size,
+  ],
 };
 
 function slug(kind: 'trace' | 'picture') {

@@ -16,7 +16,9 @@ export function sdkConfig() {
   const shared = { isDev: false, logLevel: 'Error' as const };
   if (uploadToken) return { ...shared, token: uploadToken, callbackUrl: `${env().baseUrl}/api/uploadthing` };
   const { appId, apiKey, baseUrl } = localService();
-  const token = Buffer.from(JSON.stringify({ apiKey, appId, regions: ['local1'], ingestHost: 'localhost' })).toString('base64');
+  const token = Buffer.from(JSON.stringify({ apiKey, appId, regions: ['local1'], ingestHost: 'localhost' })).toString(
+    'base64',
+  );
   return { ...shared, token, ingestUrl: baseUrl, apiUrl: baseUrl, callbackUrl: `${env().baseUrl}/api/uploadthing` };
 }
 

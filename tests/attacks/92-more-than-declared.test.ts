@@ -9,7 +9,8 @@ describe('92: 1 kB declared and far more sent; a body that is too slow; addresse
     trial = await startTrial({ idleMs: 400 });
   });
   afterEach(() => trial.close());
-  const files = async () => (await readdir(path.join(trial.dataDir, 'uploads'))).filter((name) => !name.endsWith('.json'));
+  const files = async () =>
+    (await readdir(path.join(trial.dataDir, 'uploads'))).filter((name) => !name.endsWith('.json'));
 
   it('cuts an endless body off after the declared size and keeps nothing', async () => {
     const { url } = await trial.presign('small.csv', 1000);
@@ -110,7 +111,11 @@ describe('92: 1 kB declared and far more sent; a body that is too slow; addresse
     const body = JSON.stringify({ status: 'uploaded', metadata: {}, origin: trial.base, file: {} });
     const forged = await fetch(`${trial.origin}/api/uploadthing?slug=trace`, {
       method: 'POST',
-      headers: { 'content-type': 'application/json', 'uploadthing-hook': 'callback', 'x-uploadthing-signature': `hmac-sha256=${'0'.repeat(64)}` },
+      headers: {
+        'content-type': 'application/json',
+        'uploadthing-hook': 'callback',
+        'x-uploadthing-signature': `hmac-sha256=${'0'.repeat(64)}`,
+      },
       body,
     });
     expect(forged.status).toBe(400);
@@ -123,7 +128,9 @@ describe('92: 1 kB declared and far more sent; a body that is too slow; addresse
     const bytes = someBytes(5000);
     const { url, key } = await trial.presign('kept.csv', bytes.length);
     await trial.put(url, bytes);
-    expect((await trial.utapi.listFiles()).files).toMatchObject([{ key, name: 'kept.csv', status: 'Uploaded', customId: 'custom-kept.csv' }]);
+    expect((await trial.utapi.listFiles()).files).toMatchObject([
+      { key, name: 'kept.csv', status: 'Uploaded', customId: 'custom-kept.csv' },
+    ]);
     expect((await fetch(`${trial.base}/a/kelvinleaf/${key}`)).status).toBe(403);
     const { ufsUrl } = await trial.utapi.generateSignedURL(key, { expiresIn: 60 });
     const read = await fetch(ufsUrl);

@@ -3,7 +3,8 @@ import path from 'node:path';
 import { expect, it } from 'vitest';
 import { someBytes, startTrial } from '../faults/upload-trial';
 
-const filesIn = async (dataDir: string) => (await readdir(path.join(dataDir, 'uploads'))).filter((name) => !name.endsWith('.json'));
+const filesIn = async (dataDir: string) =>
+  (await readdir(path.join(dataDir, 'uploads'))).filter((name) => !name.endsWith('.json'));
 
 it('93: a used-up quota is a sentence, and nothing of the file is kept', async () => {
   const trial = await startTrial({ quotaBytes: 5000 });
@@ -20,7 +21,8 @@ it('93: a disk that fills up in the middle leaves no file behind, and the upload
   const trial = await startTrial({
     write: async (handle, bytes, position) => {
       // The error of write(2) on a full file system.
-      if (full && position + bytes.length > 100_000) throw Object.assign(new Error('no space left on device'), { code: 'ENOSPC' });
+      if (full && position + bytes.length > 100_000)
+        throw Object.assign(new Error('no space left on device'), { code: 'ENOSPC' });
       await handle.write(bytes, 0, bytes.length, position);
     },
   });

@@ -4,7 +4,14 @@ import { tmpdir } from 'node:os';
 import path from 'node:path';
 import { parseTextTrace } from '@/lib/trace-format/text-parser';
 
-export type BenchRow = { name: string; ours: number; peer: number | null; ratio: number | null; n: number; note?: string };
+export type BenchRow = {
+  name: string;
+  ours: number;
+  peer: number | null;
+  ratio: number | null;
+  n: number;
+  note?: string;
+};
 
 const rows = 1_000_000;
 
@@ -48,7 +55,9 @@ export async function benchCsv(): Promise<BenchRow[]> {
     let peer: number | null = null;
     let note: string | undefined;
     try {
-      peer = Number(execFileSync('python3', ['-c', pandas, file], { encoding: 'utf8', stdio: ['ignore', 'pipe', 'pipe'] }));
+      peer = Number(
+        execFileSync('python3', ['-c', pandas, file], { encoding: 'utf8', stdio: ['ignore', 'pipe', 'pipe'] }),
+      );
     } catch (error) {
       note = `python3 with pandas is not installed here: ${String((error as Error).message).split('\n')[0]}`;
     }

@@ -16,7 +16,9 @@ describe('33: an upload cut off at 0, 1, 50 and 99.9 % resumes, and the digest i
     const response = await trial.put(url, bytes, held);
     expect(response.status).toBe(200);
     expect(await response.json()).toMatchObject({ serverData: { taken: true }, sha256: sha256(bytes) });
-    expect(trial.received).toEqual([{ key, name: 'wait scan µ.csv', size: bytes.length, customId: 'custom-wait scan µ.csv', sha256: sha256(bytes) }]);
+    expect(trial.received).toEqual([
+      { key, name: 'wait scan µ.csv', size: bytes.length, customId: 'custom-wait scan µ.csv', sha256: sha256(bytes) },
+    ]);
   });
 
   it('refuses to go on from another byte than the one it holds', async () => {

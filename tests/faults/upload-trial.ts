@@ -48,19 +48,44 @@ export async function startTrial(given: Partial<UploadServiceConfig> & { dataDir
     if (config) return;
     const baseUrl = `${origin}/api/local-uploads`;
     config = { dataDir, baseUrl, appId, apiKey, quotaBytes: 1e9, idleMs: 2000, callbackMs: 5000, ...given };
-    const token = Buffer.from(JSON.stringify({ apiKey, appId, regions: ['local1'], ingestHost: 'localhost' })).toString('base64');
+    const token = Buffer.from(JSON.stringify({ apiKey, appId, regions: ['local1'], ingestHost: 'localhost' })).toString(
+      'base64',
+    );
     const f = createUploadthing();
-    const sdk = { token, ingestUrl: baseUrl, apiUrl: baseUrl, callbackUrl: `${origin}/api/uploadthing`, isDev: false, logLevel: 'None' as const };
+    const sdk = {
+      token,
+      ingestUrl: baseUrl,
+      apiUrl: baseUrl,
+      callbackUrl: `${origin}/api/uploadthing`,
+      isDev: false,
+      logLevel: 'None' as const,
+    };
     utapi = new UTApi({ ...sdk, ...{ ufsHost: baseUrl.replace('http://', ''), ufsAppIdLocation: 'path' } });
     const api = utapi;
     const router = {
-      trace: f({ blob: { maxFileSize: '256MB', maxFileCount: 10 } }, { getFileHashParts: (file: { customId?: string | null; name: string; size: number }) => [file.customId, file.name, file.size], awaitServerData: true })
+      trace: f(
+        { blob: { maxFileSize: '256MB', maxFileCount: 10 } },
+        {
+          getFileHashParts: (file: { customId?: string | null; name: string; size: number }) => [
+            file.customId,
+            file.name,
+            file.size,
+          ],
+          awaitServerData: true,
+        },
+      )
         .middleware(({ files }) => ({ [UTFiles]: files.map((file) => ({ ...file, customId: `custom-${file.name}` })) }))
         .onUploadComplete(async ({ file }) => {
           const { ufsUrl } = await api.generateSignedURL(file.key, { expiresIn: 60 });
           const read = await fetch(ufsUrl);
           if (!read.ok) throw new Error(`signed read answered ${read.status}`);
-          received.push({ key: file.key, name: file.name, size: file.size, customId: file.customId, sha256: sha256(new Uint8Array(await read.arrayBuffer())) });
+          received.push({
+            key: file.key,
+            name: file.name,
+            size: file.size,
+            customId: file.customId,
+            sha256: sha256(new Uint8Array(await read.arrayBuffer())),
+          });
           return answer();
         }),
     };
@@ -122,10 +147,17 @@ export const partHead = Buffer.from(
 export const partTail = Buffer.from(`\r\n--${boundary}--\r\n`);
 
 /** A raw PUT with a chunked multipart body. */
-export function openPut(url: string, start = 0): { request: http.ClientRequest; response: Promise<{ status: number; body: string }> } {
+export function openPut(
+  url: string,
+  start = 0,
+): { request: http.ClientRequest; response: Promise<{ status: number; body: string }> } {
   const request = http.request(url, {
     method: 'PUT',
-    headers: { 'content-type': `multipart/form-data; boundary=${boundary}`, range: `bytes=${start}-`, 'transfer-encoding': 'chunked' },
+    headers: {
+      'content-type': `multipart/form-data; boundary=${boundary}`,
+      range: `bytes=${start}-`,
+      'transfer-encoding': 'chunked',
+    },
   });
   const response = new Promise<{ status: number; body: string }>((resolve, reject) => {
     request.on('error', reject);

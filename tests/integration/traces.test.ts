@@ -25,7 +25,9 @@ const traceOf = (sent: Awaited<ReturnType<typeof sendFile>>): string => {
   return sent.outcome.traceId;
 };
 const raw = (route: typeof getView, id: string, url: string, extra: Record<string, string> = {}) =>
-  route(new Request(`${lab.origin}${url}`, { headers: { cookie: lab.people.reader.cookie } }), { params: Promise.resolve({ id, ...extra }) });
+  route(new Request(`${lab.origin}${url}`, { headers: { cookie: lab.people.reader.cookie } }), {
+    params: Promise.resolve({ id, ...extra }),
+  });
 
 describe('a received trace', () => {
   const n = 30_000;
@@ -37,7 +39,12 @@ describe('a received trace', () => {
     expect(sent).toMatchObject({ status: 200, outcome: { state: 'parsed' } });
     id = traceOf(sent);
     const { body } = await call<TraceDetail>(getTrace, { as: lab.people.reader, params: { id } });
-    expect(body).toMatchObject({ fileName: 'wait scan µ.csv', state: 'parsed', rows: n, comments: ['# made up for this test'] });
+    expect(body).toMatchObject({
+      fileName: 'wait scan µ.csv',
+      state: 'parsed',
+      rows: n,
+      comments: ['# made up for this test'],
+    });
     expect(body.columns.map(({ name, symbol, unit, min, max }) => [name, symbol, unit, min, max])).toEqual([
       ['t', 't', 's', 0, (n - 1) / 100],
       ['I', 'I', 'pA', -3, 99],
@@ -50,7 +57,11 @@ describe('a received trace', () => {
     const samples = new Float64Array(await column.arrayBuffer());
     expect(samples).toHaveLength(n);
     expect(samples[12_345]).toBe(99);
-    const rows = await call<{ total: number; rows: number[][] }>(getRows, { as: lab.people.reader, params: { id }, url: '/r?from=29999&count=10' });
+    const rows = await call<{ total: number; rows: number[][] }>(getRows, {
+      as: lab.people.reader,
+      params: { id },
+      url: '/r?from=29999&count=10',
+    });
     expect(rows.body).toMatchObject({ total: n, rows: [[299.99, (29_999 % 7) - 3]] });
     const response = await raw(getView, id, '/v?x=0&y=1&pixels=100');
     const bytes = await response.arrayBuffer();
@@ -58,7 +69,9 @@ describe('a received trace', () => {
     const view = decodeView(bytes);
     expect(view.kind).toBe('buckets');
     expect(Math.max(...view.max)).toBe(99);
-    const near = decodeView(await (await raw(getView, id, '/v?x=0&y=1&pixels=100&from=123.44&to=123.46')).arrayBuffer());
+    const near = decodeView(
+      await (await raw(getView, id, '/v?x=0&y=1&pixels=100&from=123.44&to=123.46')).arrayBuffer(),
+    );
     expect(near.kind).toBe('rows');
     expect(Array.from(near.min)).toContain(99);
   });
@@ -77,7 +90,9 @@ describe('a received trace', () => {
   it('refuses a column that is not there, and an outsider', async () => {
     expect((await call(getColumn, { as: lab.people.author, params: { id, index: '7' } })).status).toBe(404);
     for (const route of [getTrace, getColumn, getView, getRows, getFile]) {
-      expect((await call(route, { as: lab.people.outsider, params: { id, index: '0' }, url: '/x?y=0&pixels=100' })).status).toBe(404);
+      expect(
+        (await call(route, { as: lab.people.outsider, params: { id, index: '0' }, url: '/x?y=0&pixels=100' })).status,
+      ).toBe(404);
       expect((await call(route, { as: null, params: { id, index: '0' }, url: '/x?y=0&pixels=100' })).status).toBe(401);
     }
   });
@@ -87,7 +102,9 @@ it('keeps a file that is no table, with a sentence instead of columns', async ()
   const id = traceOf(await sendFile(lab, lab.people.author, entryId, 'notes.csv', Buffer.from('t,I\n0,1\n1\n')));
   const { body } = await call<TraceDetail>(getTrace, { as: lab.people.author, params: { id } });
   expect(body).toMatchObject({ state: 'unreadable', problem: expect.stringContaining('Line 3 has 1 column') });
-  expect((await call(getRows, { as: lab.people.author, params: { id } })).body).toMatchObject({ error: { message: expect.stringContaining('Line 3') } });
+  expect((await call(getRows, { as: lab.people.author, params: { id } })).body).toMatchObject({
+    error: { message: expect.stringContaining('Line 3') },
+  });
 });
 
 it('answers the same upload sent again with the first record', async () => {
@@ -96,7 +113,9 @@ it('answers the same upload sent again with the first record', async () => {
   const first = traceOf(await sendFile(lab, lab.people.author, entryId, 'again.csv', bytes, { uploadId }));
   // The upload service has the file still and refuses it; the record is asked for by the upload's id.
   const { GET } = await import('@/app/api/entries/[id]/uploads/[uploadId]/route');
-  expect((await call(GET, { as: lab.people.author, params: { id: entryId, uploadId } })).body).toMatchObject({ traceId: first });
+  expect((await call(GET, { as: lab.people.author, params: { id: entryId, uploadId } })).body).toMatchObject({
+    traceId: first,
+  });
   expect((await call(GET, { as: lab.people.second, params: { id: entryId, uploadId } })).status).toBe(403);
 });
 
@@ -109,8 +128,18 @@ it('20: a parser thread that runs out of memory is a sentence on the trace, and 
   const fs = await import('node:fs/promises');
   await fs.writeFile(path.join(lab.dataDir, 'blobs', digestOf(bytes)), bytes);
   await lab.db.insert(trace).values({
-    id, notebookId: lab.notebookId, entryId, kind: 'trace', fileName: 'large.csv', mediaType: 'text/csv', bytes: bytes.length,
-    sha256: digestOf(bytes), state: 'received', uploadId: 'out-of-memory-0001', uploadedBy: lab.people.author.id, receivedAt: new Date(),
+    id,
+    notebookId: lab.notebookId,
+    entryId,
+    kind: 'trace',
+    fileName: 'large.csv',
+    mediaType: 'text/csv',
+    bytes: bytes.length,
+    sha256: digestOf(bytes),
+    state: 'received',
+    uploadId: 'out-of-memory-0001',
+    uploadedBy: lab.people.author.id,
+    receivedAt: new Date(),
   });
   await ingestTrace(id, { heapMb: 2, seconds: 60 });
   const { body } = await call<TraceDetail>(getTrace, { as: lab.people.author, params: { id } });

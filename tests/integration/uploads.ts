@@ -37,12 +37,22 @@ export type Uploads = Awaited<ReturnType<typeof startUploads>>;
 
 export const digestOf = (bytes: Uint8Array) => createHash('sha256').update(bytes).digest('hex');
 
-export async function newEntry(laboratory: Pick<Laboratory, 'people'> & { origin: string }, as: TestPerson = laboratory.people.author): Promise<string> {
+export async function newEntry(
+  laboratory: Pick<Laboratory, 'people'> & { origin: string },
+  as: TestPerson = laboratory.people.author,
+): Promise<string> {
   const made = await call<{ id: string }>(createEntry, {
     as,
     params: { code: 'NB-01' },
     headers: { origin: laboratory.origin },
-    body: { title: 'Scan', workDate: '2031-03-04', cooldownId: null, deviceIds: [], layout: 'cooldown-day', requestKey: randomUUID() },
+    body: {
+      title: 'Scan',
+      workDate: '2031-03-04',
+      cooldownId: null,
+      deviceIds: [],
+      layout: 'cooldown-day',
+      requestKey: randomUUID(),
+    },
   });
   if (made.status !== 200) throw new Error(`entry: ${made.status} ${JSON.stringify(made.body)}`);
   return made.body.id;
@@ -57,13 +67,34 @@ export async function sendFile(
   entryId: string,
   name: string,
   bytes: Uint8Array,
-  options: { slug?: 'trace' | 'picture'; sha256?: string; uploadId?: string; size?: number; type?: string; headers?: Record<string, string> } = {},
+  options: {
+    slug?: 'trace' | 'picture';
+    sha256?: string;
+    uploadId?: string;
+    size?: number;
+    type?: string;
+    headers?: Record<string, string>;
+  } = {},
 ): Promise<Sent> {
-  const { slug = 'trace', sha256 = digestOf(bytes), uploadId = randomUUID(), size = bytes.length, type = 'text/csv' } = options;
+  const {
+    slug = 'trace',
+    sha256 = digestOf(bytes),
+    uploadId = randomUUID(),
+    size = bytes.length,
+    type = 'text/csv',
+  } = options;
   const begin = await fetch(`${uploads.origin}/api/uploadthing?actionType=upload&slug=${slug}`, {
     method: 'POST',
-    headers: { 'content-type': 'application/json', origin: uploads.origin, ...(as ? { cookie: as.cookie } : {}), ...options.headers },
-    body: JSON.stringify({ input: { entryId, files: [{ uploadId, sha256 }] }, files: [{ name, size, type, lastModified: 1 }] }),
+    headers: {
+      'content-type': 'application/json',
+      origin: uploads.origin,
+      ...(as ? { cookie: as.cookie } : {}),
+      ...options.headers,
+    },
+    body: JSON.stringify({
+      input: { entryId, files: [{ uploadId, sha256 }] },
+      files: [{ name, size, type, lastModified: 1 }],
+    }),
   });
   const answer = (await begin.json()) as { message?: string; error?: { message: string } } | [{ url: string }];
   if (!begin.ok || !Array.isArray(answer)) {

@@ -7,7 +7,8 @@ export const maxDuration = 3600;
 /** The local stand-in for the upload service: every address is signed and every call of our own carries its key. */
 async function serve(request: Request): Promise<Response> {
   const config = localServiceConfig();
-  if (!config) return Response.json({ error: 'A hosted upload service is set up; nothing lies here.' }, { status: 404 });
+  if (!config)
+    return Response.json({ error: 'A hosted upload service is set up; nothing lies here.' }, { status: 404 });
   return handleUploadService(request, config);
 }
 

@@ -7,15 +7,18 @@ import { blobPath, storedFile } from '@/server/traces/service';
 /** A picture, of a type that its content proved when it was received (PNG, JPEG, GIF, WebP). */
 export const GET = withAccess({ action: 'trace.read' }, async ({ scope }) => {
   const { sha256, bytes, fileName, mediaType } = await storedFile(scope.traceId, 'picture');
-  return new Response(Readable.toWeb(createReadStream(/* turbopackIgnore: true */ blobPath(sha256))) as ReadableStream<Uint8Array>, {
-    headers: {
-      'content-type': mediaType,
-      'content-length': String(bytes),
-      'content-disposition': attachmentHeader(fileName),
-      'content-security-policy': "default-src 'none'; sandbox",
-      'cross-origin-resource-policy': 'same-origin',
-      'x-content-type-options': 'nosniff',
-      'cache-control': 'private, max-age=300',
+  return new Response(
+    Readable.toWeb(createReadStream(/* turbopackIgnore: true */ blobPath(sha256))) as ReadableStream<Uint8Array>,
+    {
+      headers: {
+        'content-type': mediaType,
+        'content-length': String(bytes),
+        'content-disposition': attachmentHeader(fileName),
+        'content-security-policy': "default-src 'none'; sandbox",
+        'cross-origin-resource-policy': 'same-origin',
+        'x-content-type-options': 'nosniff',
+        'cache-control': 'private, max-age=300',
+      },
     },
-  });
+  );
 });

@@ -9,15 +9,18 @@ import { blobPath, storedFile } from '@/server/traces/service';
 export const GET = withAccess({ action: 'trace.read' }, async ({ scope }) => {
   const { sha256, bytes, fileName } = await storedFile(scope.traceId, 'trace');
   if (scope.entry) await noteServed(scope.person.id, scope.entry, scope.traceId);
-  return new Response(Readable.toWeb(createReadStream(/* turbopackIgnore: true */ blobPath(sha256))) as ReadableStream<Uint8Array>, {
-    headers: {
-      'content-type': 'application/octet-stream',
-      'content-length': String(bytes),
-      'content-disposition': attachmentHeader(fileName),
-      'content-security-policy': "default-src 'none'; sandbox",
-      'cross-origin-resource-policy': 'same-origin',
-      'x-content-type-options': 'nosniff',
-      'cache-control': 'private, no-store',
+  return new Response(
+    Readable.toWeb(createReadStream(/* turbopackIgnore: true */ blobPath(sha256))) as ReadableStream<Uint8Array>,
+    {
+      headers: {
+        'content-type': 'application/octet-stream',
+        'content-length': String(bytes),
+        'content-disposition': attachmentHeader(fileName),
+        'content-security-policy': "default-src 'none'; sandbox",
+        'cross-origin-resource-policy': 'same-origin',
+        'x-content-type-options': 'nosniff',
+        'cache-control': 'private, no-store',
+      },
     },
-  });
+  );
 });

@@ -18,7 +18,13 @@ const query = z.object({
 /** What a plot shows, as lib/plot/view encodes it; its bytes are proportional to the pixels, not to the trace. */
 export const GET = withAccess({ action: 'trace.read', query }, async ({ scope, query: wanted }) => {
   const { x, y, from, to, pixels } = wanted;
-  const view = await readView(await parsedDigest(scope.traceId), { x: x ?? null, y, from: from ?? null, to: to ?? null, pixels });
+  const view = await readView(await parsedDigest(scope.traceId), {
+    x: x ?? null,
+    y,
+    from: from ?? null,
+    to: to ?? null,
+    pixels,
+  });
   if (scope.entry) await noteServed(scope.person.id, scope.entry, scope.traceId);
   return binary(encodeView(view));
 });
