@@ -1,0 +1,135 @@
+import { genUploader, UploadAbortedError } from 'uploadthing/client';
+import type { FileRouter } from 'uploadthing/server';
+import { request } from '@/components/hooks/request';
+import { AppError } from '@/lib/errors/app-error';
+import { maxPictureBytes, maxTraceBytes, type UploadInput, type UploadOutcome } from '@/lib/schemas/upload';
+import { fileDigest } from './digest';
+import { forgetUpload, uploadIdFor, type FileMark } from './unfinished';
+
+/** Sends one file to an entry: digest, address, bytes from where an earlier try ended, the server's record. */
+
+export type SendStage = 'reading' | 'sending' | 'recording';
+export type Kind = 'trace' | 'picture';
+
+type Running = {
+  pauseUpload: () => void;
+  resumeUpload: () => void;
+  done: () => Promise<{ serverData: unknown }[] | { serverData: unknown }>;
+};
+/** The one method used of the library; its own type follows the server's router, which a component must not import. */
+type CreateUpload = (
+  slug: Kind,
+  options: { files: File[]; input: UploadInput; onUploadProgress: (event: { loaded: number }) => void },
+) => Promise<Running>;
+
+let createUpload: CreateUpload | null = null;
+function uploader(): CreateUpload {
+  const url = new URL('/api/uploadthing', window.location.origin);
+  createUpload ??= genUploader<FileRouter>({ url, package: '@uploadthing/react' })
+    .createUpload as unknown as CreateUpload;
+  return createUpload;
+}
+
+/** A refusal that sending again does not change. */
+export class Refused extends Error {}
+/** The connection broke; what arrived is kept, and sending again goes on from there. */
+export class Interrupted extends Error {}
+
+export type Sending = {
+  pause: () => void;
+  resume: () => void;
+  /** The id of the received file. Rejects with Refused, Interrupted, or AbortError while the digest is computed. */
+  traceId: Promise<string>;
+};
+
+const refusals = new Set(['FORBIDDEN', 'NOT_FOUND', 'BAD_REQUEST', 'TOO_LARGE', 'TOO_SMALL']);
+
+/** @returns at once; `signal` ends the reading of the file, `pause` the sending. */
+export function sendFile(options: {
+  entryId: string;
+  kind: Kind;
+  file: File;
+  onProgress: (stage: SendStage, bytes: number) => void;
+  signal: AbortSignal;
+}): Sending {
+  let running: Running | null = null;
+  return {
+    pause: () => {
+      try {
+        running?.pauseUpload();
+      } catch (error) {
+        // The library throws where it is paused already; that is what was asked for.
+        if (!(error instanceof UploadAbortedError)) throw error;
+      }
+    },
+    resume: () => running?.resumeUpload(),
+    traceId: send(options, (started) => {
+      running = started;
+    }),
+  };
+}
+
+async function send(
+  { entryId, kind, file, onProgress, signal }: Parameters<typeof sendFile>[0],
+  onRunning: (running: Running) => void,
+): Promise<string> {
+  const limit = kind === 'trace' ? maxTraceBytes : maxPictureBytes;
+  if (file.size === 0) throw new Refused(`${file.name} is empty: it has no bytes. Nothing was sent.`);
+  if (file.size > limit) {
+    throw new Refused(
+      `${file.name} has ${Math.ceil(file.size / 1e6)} MB; a ${kind} may have up to ${limit / 1e6} MB. Nothing was sent; split it.`,
+    );
+  }
+  const digest = await fileDigest(file, (bytes) => onProgress('reading', bytes), signal);
+  const mark: FileMark = { entryId, kind, name: file.name, size: file.size, lastModified: file.lastModified, digest };
+  const { uploadId, resumed } = uploadIdFor(mark);
+  const outcome = (resumed ? await arrived(entryId, uploadId) : null) ?? (await transfer());
+  if ('error' in outcome) throw new Refused(outcome.error);
+  forgetUpload(mark);
+  return outcome.traceId;
+
+  async function transfer(): Promise<UploadOutcome> {
+    onProgress('sending', 0);
+    try {
+      const running = await uploader()(kind, {
+        files: [file],
+        input: { entryId, files: [{ uploadId, sha256: digest }] },
+        onUploadProgress: ({ loaded }) =>
+          onProgress(loaded >= file.size ? 'recording' : 'sending', Math.min(loaded, file.size)),
+      });
+      onRunning(running);
+      const done = await running.done();
+      const { serverData } = Array.isArray(done) ? done[0] : done;
+      if (serverData && typeof serverData === 'object' && ('traceId' in serverData || 'error' in serverData)) {
+        return serverData as UploadOutcome;
+      }
+    } catch (error) {
+      // The answer may have been lost on the way while the file has arrived.
+      const known = await arrived(entryId, uploadId);
+      if (known) return known;
+      throw asFailure(error);
+    }
+    const known = await arrived(entryId, uploadId);
+    if (known) return known;
+    throw new Interrupted('The file was sent, but the server has not answered. It is kept; try again to go on.');
+  }
+}
+
+async function arrived(entryId: string, uploadId: string): Promise<UploadOutcome | null> {
+  try {
+    return await request<UploadOutcome>('GET', `/api/entries/${encodeURIComponent(entryId)}/uploads/${uploadId}`);
+  } catch (error) {
+    if (error instanceof AppError && error.code === 'not_found') return null;
+    if (error instanceof AppError) throw new Refused(error.message);
+    throw new Interrupted('The network is away. What arrived is kept; try again when it is back.', { cause: error });
+  }
+}
+
+function asFailure(error: unknown): Error {
+  if (!(error instanceof Error))
+    return new Interrupted('The upload broke off. What arrived is kept; try again to go on.');
+  const { code, data } = error as Error & { code?: string; data?: { error?: unknown } };
+  if (typeof data?.error === 'string') return new Interrupted(data.error, { cause: error });
+  if (code && refusals.has(code)) return new Refused(error.message, { cause: error });
+  return new Interrupted('The upload broke off. What arrived is kept; try again to go on.', { cause: error });
+}
