@@ -70,7 +70,9 @@ export function SampleTable({ provider, caption }: { provider: PlotProvider; cap
         tabIndex={0}
         role="region"
         aria-label={caption}
-        className="max-h-80 overflow-auto border border-rule"
+        className="border border-rule"
+        // Not a class: without a bounded height the virtual list would lay out every row.
+        style={{ maxHeight: 320, overflow: 'auto' }}
       >
         <table className="table-plain figures text-sm" aria-rowcount={provider.rows + 1}>
           <caption className="sr-only">{caption}</caption>
