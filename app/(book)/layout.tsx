@@ -1,6 +1,7 @@
 import Link from 'next/link';
 import { redirect } from 'next/navigation';
 import type { ReactNode } from 'react';
+import { CommandShell } from '@/components/shell/command-shell';
 import { BookHeader } from '@/components/shell/book-header';
 import { currentPerson } from '@/server/access/page';
 import { env } from '@/server/env/env';
@@ -11,7 +12,7 @@ export default async function BookLayout({ children }: { children: ReactNode }) 
   const person = await currentPerson();
   if (!person) redirect('/sign-in');
   return (
-    <>
+    <CommandShell>
       <a href="#content" className="sr-only focus:not-sr-only focus:absolute focus:z-50 focus:bg-sheet focus:p-3">
         Skip to the content
       </a>
@@ -30,6 +31,6 @@ export default async function BookLayout({ children }: { children: ReactNode }) 
           <Link href="/mailbox">Local mailbox</Link>
         </footer>
       ) : null}
-    </>
+    </CommandShell>
   );
 }

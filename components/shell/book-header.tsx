@@ -2,6 +2,7 @@
 
 import Link from 'next/link';
 import { usePathname } from 'next/navigation';
+import { FindButton } from '@/components/commands/command-menu';
 import { request } from '@/components/hooks/request';
 import { Mark } from '@/components/ui/stair';
 import { ThemeSwitch } from '@/components/ui/theme-switch';
@@ -54,6 +55,7 @@ export function BookHeader({
           ))}
         </nav>
         <div className="ml-auto flex items-center gap-3">
+          <FindButton />
           <details className="relative">
             <summary className="min-h-7 cursor-pointer list-none py-1 text-quiet hover:text-action">
               <span className="hidden sm:inline">{person.name}</span>

@@ -110,17 +110,15 @@ export async function insertEntry(tx: Tx, input: NewEntry): Promise<{ id: string
     by: input.authorId,
     received: input.at,
   });
-  await tx
-    .insert(entryDraft)
-    .values({
-      entryId: id,
-      revision: 1,
-      title: input.title,
-      doc: input.doc,
-      stamps,
-      savedAt: input.at,
-      savedBy: input.authorId,
-    });
+  await tx.insert(entryDraft).values({
+    entryId: id,
+    revision: 1,
+    title: input.title,
+    doc: input.doc,
+    stamps,
+    savedAt: input.at,
+    savedBy: input.authorId,
+  });
   await appendLog(tx, {
     kind: 'entry created',
     actorId: input.authorId,
@@ -451,4 +449,34 @@ export async function findByDigest(
     )
     .where(eq(entryVersion.digest, digest));
   return row ?? null;
+}
+
+export type EntryChoices = Record<'cooldowns' | 'devices' | 'colleagues', { id: string; name: string }[]>;
+
+/** What the author can tie a draft to, and whom they can invite to write in it. */
+export async function entryChoices(scope: ScopeOf<'entry.read'>): Promise<EntryChoices> {
+  const db = await getDb();
+  const { notebookId } = scope.entry;
+  const writers = await db
+    .select({ id: notebookMember.userId })
+    .from(notebookMember)
+    .where(and(eq(notebookMember.notebookId, notebookId), inArray(notebookMember.role, ['lead', 'author'])));
+  return {
+    cooldowns: await db
+      .select({ id: cooldown.id, name: cooldown.name })
+      .from(cooldown)
+      .where(eq(cooldown.notebookId, notebookId)),
+    devices: await db
+      .select({ id: device.id, name: device.name })
+      .from(device)
+      .where(eq(device.notebookId, notebookId)),
+    colleagues: [
+      ...(
+        await peopleById(
+          db,
+          writers.map((w) => w.id),
+        )
+      ).values(),
+    ],
+  };
 }

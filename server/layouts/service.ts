@@ -57,14 +57,12 @@ export async function saveLayout(
     .where(eq(entryDraft.entryId, input.entryId));
   if (!row) throw new AppError('invalid', 'This entry is not one of this notebook.');
   const id = randomUUID();
-  await db
-    .insert(layout)
-    .values({
-      id,
-      notebookId: scope.notebook.id,
-      name: input.name,
-      doc: structureOf(row.doc),
-      createdBy: scope.person.id,
-    });
+  await db.insert(layout).values({
+    id,
+    notebookId: scope.notebook.id,
+    name: input.name,
+    doc: structureOf(row.doc),
+    createdBy: scope.person.id,
+  });
   return { id };
 }

@@ -85,15 +85,13 @@ export async function insertNotebook(
   tx: Tx,
   input: { id: string; code: string; title: string; description: string; leadId: string },
 ): Promise<void> {
-  await tx
-    .insert(notebook)
-    .values({
-      id: input.id,
-      code: input.code,
-      title: input.title,
-      description: input.description,
-      createdBy: input.leadId,
-    });
+  await tx.insert(notebook).values({
+    id: input.id,
+    code: input.code,
+    title: input.title,
+    description: input.description,
+    createdBy: input.leadId,
+  });
   await tx.insert(notebookMember).values({ notebookId: input.id, userId: input.leadId, role: 'lead' });
   await appendLog(tx, {
     kind: 'notebook founded',
