@@ -70,13 +70,7 @@ export function SampleTable({ provider, caption }: { provider: PlotProvider; cap
         tabIndex={0}
         role="region"
         aria-label={caption}
-<<<<<<< HEAD
         className="max-h-80 overflow-auto border border-rule"
-=======
-        className="border border-rule"
-        // Not a class: without a bounded height the virtual list would lay out every row.
-        style={{ maxHeight: 320, overflow: 'auto' }}
->>>>>>> 9a681bd4d85b9f5fc3498e40b4e11b5689cbfa2c
       >
         <table className="table-plain figures text-sm" aria-rowcount={provider.rows + 1}>
           <caption className="sr-only">{caption}</caption>
