@@ -1,9 +1,6 @@
 'use client';
 
 import Link from 'next/link';
-import { useRouter } from 'next/navigation';
-import { useState } from 'react';
-import { request } from '@/components/hooks/request';
 import { ActionForm } from '@/components/ui/action-form';
 import { Field, LongField } from '@/components/ui/field';
 import { AttentionSentence } from '@/components/ui/sentence';
@@ -15,7 +12,7 @@ export type EntryChoices = {
   colleagues: { id: string; name: string }[];
 };
 
-/** What can be done with an entry as a whole: sign, ask for help, its facts, history, striking out. */
+/** What can be done with an entry as a whole: its facts, writing together, layout, history, striking out. */
 export function EntryActions({
   entry,
   choices,
@@ -37,40 +34,12 @@ export function EntryActions({
       <Link href={`/entries/${entry.id}/versions`} className="press">
         Versions
       </Link>
-      {entry.may.sign ? <SignButton entry={entry} /> : null}
       {entry.struckReason ? (
         <div className="w-full">
           <AttentionSentence>Struck out: {entry.struckReason}</AttentionSentence>
         </div>
       ) : null}
     </div>
-  );
-}
-
-/** Cuts a version of what the server holds and goes to the signing page, which shows exactly what is bound. */
-function SignButton({ entry }: { entry: EntryDto }) {
-  const [busy, setBusy] = useState(false);
-  const router = useRouter();
-  const go = async () => {
-    setBusy(true);
-    // The sheet keeps its own text; it sends what is unsent on this event and answers when it has.
-    const waiting: Promise<unknown>[] = [];
-    window.dispatchEvent(
-      new CustomEvent('kelvinleaf:settle', { detail: (work: Promise<unknown>) => waiting.push(work) }),
-    );
-    await Promise.allSettled(waiting);
-    try {
-      const { revision } = await request<{ revision: number }>('GET', `/api/entries/${entry.id}/draft`);
-      await request('POST', `/api/entries/${entry.id}/versions`, { basedOn: revision, reason: null });
-    } catch {
-      // The signing page says what stands in the way: it shows the newest version and whether the draft is newer.
-    }
-    router.push(`/entries/${entry.id}/sign`);
-  };
-  return (
-    <button type="button" className="press press-main" disabled={busy} onClick={() => void go()}>
-      Sign …
-    </button>
   );
 }
 

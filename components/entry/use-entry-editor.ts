@@ -85,6 +85,8 @@ export function useEntryEditor({ extensions, doc, editable, store, label, onChan
     content: doc,
     editable,
     immediatelyRender: false,
+    // The editor's own style element would break the page's style policy; its rules stand in entry.css.
+    injectCSS: false,
     shouldRerenderOnTransaction: false,
     editorProps: {
       attributes: {

@@ -2,6 +2,7 @@
 
 import type { Editor } from '@tiptap/core';
 import { EditorContent } from '@tiptap/react';
+import { useRouter } from 'next/navigation';
 import { useCallback, useEffect, useMemo, useRef, useState } from 'react';
 import type { DocumentJson } from '@/lib/document/json';
 import type { DraftDto, EntryDto, PersonDto, TraceDto } from '@/lib/schemas/entry';
@@ -88,6 +89,11 @@ export function WritingSheet({ entry, draft: first, person, build }: Props) {
   useStampsShown(editor, draft.stamps, draft.written, people, person.initials, entry.workDate);
 
   const { cutVersion } = draft;
+  const router = useRouter();
+  // A signature binds a version: it is cut of the newest text, and where that fails the reason stands beside the text.
+  const sign = async () => {
+    if (await cutVersion(null)) router.push(`/entries/${entry.id}/sign`);
+  };
   useEffect(() => {
     const onKey = (event: KeyboardEvent) => {
       if (!(event.ctrlKey || event.metaKey) || event.shiftKey || event.altKey || event.key.toLowerCase() !== 's')
@@ -165,7 +171,13 @@ export function WritingSheet({ entry, draft: first, person, build }: Props) {
           {editor ? <Toolbar editor={editor} host={host} /> : null}
           {traceInput('trace', '')}
           {traceInput('picture', 'image/png,image/jpeg,image/gif,image/webp')}
-          <AttachmentList attachments={attachments} onCancel={cancel} onRetry={retry} onPause={pause} onResume={resume} />
+          <AttachmentList
+            attachments={attachments}
+            onCancel={cancel}
+            onRetry={retry}
+            onPause={pause}
+            onResume={resume}
+          />
           {comparing && status.kind === 'conflict' ? (
             <Compare
               mine={draft.text()}
@@ -206,6 +218,7 @@ export function WritingSheet({ entry, draft: first, person, build }: Props) {
           stamps={draft.stamps}
           written={draft.written}
           names={people.names}
+          onSign={entry.may.sign ? () => void sign() : undefined}
         />
       </div>
       <RenewDialog open={renewing} onOpenChange={setRenewing} personName={person.name} onRenewed={draft.resume} />

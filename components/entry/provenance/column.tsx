@@ -17,11 +17,13 @@ type Props = {
   stamps: BlockStamps;
   written: Record<string, string>;
   names: Record<string, string>;
+  /** Given to the author of a draft. */
+  onSign?: () => void;
   children?: ReactNode;
 };
 
 /** The column at the right that follows the cursor: a value, a trace, or the block it stands in. */
-export function ProvenanceColumn({ entry, editor, stamps, written, names, children }: Props) {
+export function ProvenanceColumn({ entry, editor, stamps, written, names, onSign, children }: Props) {
   const { focus } = useSheet();
   return (
     <aside className="provenance" aria-label="Provenance">
@@ -31,7 +33,7 @@ export function ProvenanceColumn({ entry, editor, stamps, written, names, childr
         <BlockProvenance stamp={stamps[focus.blockId]} written={written[focus.blockId]} names={names} />
       ) : null}
       {!focus ? <p className="text-quiet">Choose a value, a trace or a paragraph to see where it comes from.</p> : null}
-      <ToCountersign entry={entry} />
+      <ToCountersign entry={entry} onSign={onSign} />
       {children}
     </aside>
   );
@@ -75,7 +77,7 @@ function OfTrace({ editor, focus }: { editor: Editor | null; focus: Focus }) {
   return <TraceProvenance node={node.attrs as TraceNodeAttributes} file={file} />;
 }
 
-function ToCountersign({ entry }: { entry: EntryDto }) {
+function ToCountersign({ entry, onSign }: { entry: EntryDto; onSign?: () => void }) {
   const waits = entry.state === 'signed' && (entry.may.countersign || entry.countersignObstacle !== null);
   if (!waits && !entry.may.sign) return null;
   return (
@@ -93,10 +95,15 @@ function ToCountersign({ entry }: { entry: EntryDto }) {
           reason.
         </p>
       ) : null}
-      {(waits && !entry.countersignObstacle) || (!waits && entry.may.sign) ? (
-        <Link className="press press-main" href={`/entries/${entry.id}/sign`}>
-          {waits ? 'Countersign' : 'Sign'}
+      {waits && !entry.countersignObstacle ? (
+        <Link className="press press-main" href={`/entries/${entry.id}/countersign`}>
+          Countersign
         </Link>
+      ) : null}
+      {!waits && onSign ? (
+        <button type="button" className="press press-main" onClick={onSign}>
+          Sign
+        </button>
       ) : null}
     </section>
   );
