@@ -22,6 +22,9 @@ const constantValues = new Map<string, Scalar>(
   ]),
 );
 
+/** What a literal of a line that was read before states: it is the same at every recalculation. */
+const statedBefore = new WeakMap<Expression, { id: string; symbol: string; scalar: Scalar }>();
+
 /** Walks a line's tree. Throws a Refusal, or Pending where samples are not there yet. */
 export function calculate(tree: Expression, context: Context): Quantity {
   return new Calculation(tree, context).run();
@@ -71,7 +74,8 @@ class Calculation {
     }
   }
 
-  private literal({ literal, place }: Expression & { kind: 'literal' }): Scalar {
+  private literal(node: Expression & { kind: 'literal' }): Scalar {
+    const { literal, place } = node;
     for (const name of literal.ambiguous) {
       if (name === 'h' || this.context.isSymbol(name)) {
         const other = name === 'h' ? 'the Planck constant' : `the symbol ${name}`;
@@ -88,7 +92,14 @@ class Calculation {
     const whole = this.isWhole(place);
     if (!whole && literal.unit === null && literal.u === null && !literal.exactly) return bareNumber(literal);
     const { id, symbol } = this.context;
-    return statedLiteral(literal, { id: `${id}#${place}`, label: whole ? symbol : `${literal.text} in ${symbol}` });
+    const before = statedBefore.get(node);
+    if (before?.id === id && before.symbol === symbol) return before.scalar;
+    const scalar = statedLiteral(literal, {
+      id: `${id}#${place}`,
+      label: whole ? symbol : `${literal.text} in ${symbol}`,
+    });
+    statedBefore.set(node, { id, symbol, scalar });
+    return scalar;
   }
 
   /** Whether the line is nothing but this literal, with or without a sign. */

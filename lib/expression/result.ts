@@ -12,7 +12,7 @@ import { budgetOf } from './budget';
 import type { BudgetLine, CellError, CellSource, DerivedColumn, ValueResult } from './contract';
 import { unitName } from './operations';
 import type { Line } from './parse';
-import { expressionTex, resultMathml, symbolTex, wordsMathml } from './typeset';
+import { resultMathml, wordsMathml } from './typeset';
 
 /** A result with nothing in it but what the line itself says. */
 function blank(cell: CellSource, line: Line | null, state: ValueResult['state']): ValueResult {
@@ -21,8 +21,8 @@ function blank(cell: CellSource, line: Line | null, state: ValueResult['state'])
     symbol: line?.symbol ?? null,
     state,
     text: null,
-    symbolTex: line ? symbolTex(line.symbol) : null,
-    expressionTex: line ? expressionTex(line.tree) : null,
+    symbolTex: line?.tex.symbol ?? null,
+    expressionTex: line?.tex.expression ?? null,
     mathml: null,
     value: null,
     unit: null,
@@ -32,7 +32,7 @@ function blank(cell: CellSource, line: Line | null, state: ValueResult['state'])
     expanded: null,
     coverage,
     budget: [],
-    dependsOn: line ? line.names.map(({ name }) => name) : [],
+    dependsOn: line?.dependsOn ?? [],
     warnings: [],
     error: null,
   };
@@ -70,19 +70,16 @@ export function scalarResult(
 ): ValueResult {
   const combined = combine(scalar, correlations);
   const shown = show(scalar, combined.u, { unit: wishedUnit(cell, line, scalar), significant: cell.digits });
-  const text = writeText(shown);
-  const result: ValueResult = {
-    ...blank(cell, line, 'ok'),
-    text,
-    mathml: resultMathml(line.symbol, shown),
-    value: shown.value,
-    unit: shown.unit.text,
-    u: shown.u,
-    dof: combined.dof,
-    k: combined.k,
-    expanded: combined.k === null ? null : combined.k * shown.u,
-    warnings: [...new Set([...warnings, ...combined.warnings])],
-  };
+  const result = blank(cell, line, 'ok');
+  result.text = writeText(shown);
+  result.mathml = resultMathml(line.tex.symbolMathml, shown);
+  result.value = shown.value;
+  result.unit = shown.unit.text;
+  result.u = shown.u;
+  result.dof = combined.dof;
+  result.k = combined.k;
+  result.expanded = combined.k === null ? null : combined.k * shown.u;
+  result.warnings = [...new Set([...warnings, ...combined.warnings])];
   return withBudget(result, scalar, shown);
 }
 
@@ -120,7 +117,7 @@ export function columnResult(
   const result: ValueResult = {
     ...blank(cell, line, 'ok'),
     text: words,
-    mathml: wordsMathml(line.symbol, words),
+    mathml: wordsMathml(line.tex.symbolMathml, words),
     unit: unit.text,
     warnings: [...new Set(warnings)],
   };

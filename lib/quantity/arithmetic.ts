@@ -49,18 +49,36 @@ function addTerms(into: Terms, terms: ReadonlyMap<string, Term<Series>>, partial
   }
 }
 
+/** The chain rule; what passes unchanged is not copied. */
+function combined(a: Quantity, b: Quantity | null, { dx, dy }: Partials): ReadonlyMap<string, Term<Series>> {
+  if (b === null || b.terms.size === 0) {
+    if (dx === 1 || a.terms.size === 0) return a.terms;
+  } else if (a.terms.size === 0 && dy === 1) {
+    return b.terms;
+  }
+  const terms: Terms = new Map();
+  addTerms(terms, a.terms, dx);
+  if (b) addTerms(terms, b.terms, dy);
+  return terms;
+}
+
 export type Shape = { dimension: Dimension; scale: Unit['scale']; hint: Unit | null; label: string };
 
 /** Puts a result together; `label` names it for the reader where it is a column. */
 export function assemble(a: Quantity, b: Quantity | null, partials: Partials, shape: Shape): Quantity {
-  const terms: Terms = new Map();
-  addTerms(terms, a.terms, partials.dx);
-  if (b) addTerms(terms, b.terms, partials.dy);
+  const terms = combined(a, b, partials);
   const { dimension, scale, hint, label } = shape;
   const column = a.kind === 'column' ? a : b?.kind === 'column' ? b : null;
   if (!column) {
     if (typeof partials.z !== 'number') throw new Error('A scalar operation gave a column.');
-    return { kind: 'scalar', value: partials.z, dimension, scale, hint, terms: terms as Map<string, Term<number>> };
+    return {
+      kind: 'scalar',
+      value: partials.z,
+      dimension,
+      scale,
+      hint,
+      terms: terms as ReadonlyMap<string, Term<number>>,
+    };
   }
   const values = typeof partials.z === 'number' ? new Float64Array(column.values.length).fill(partials.z) : partials.z;
   for (let i = 0; i < values.length; i++) if (!Number.isFinite(values[i])) values[i] = NaN;
