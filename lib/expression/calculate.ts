@@ -2,6 +2,7 @@ import { constants } from '@/lib/constants/constants';
 import { Refusal } from '@/lib/errors/refusal';
 import { negate } from '@/lib/quantity/arithmetic';
 import { combine } from '@/lib/quantity/combine';
+import { Leaves } from '@/lib/quantity/leaves';
 import { exactInput } from '@/lib/quantity/input';
 import { fromInput, plain, type Column, type Quantity, type Scalar } from '@/lib/quantity/quantity';
 import { dimensionless } from '@/lib/units/dimension';
@@ -32,6 +33,7 @@ export function calculate(tree: Expression, context: Context): Quantity {
 
 class Calculation {
   private calls = 0;
+  private readonly leaves = new Leaves();
 
   constructor(
     private readonly tree: Expression,
@@ -39,7 +41,7 @@ class Calculation {
   ) {}
 
   run(): Quantity {
-    const result = this.value(this.tree);
+    const result = this.leaves.expand(this.value(this.tree));
     if (result.kind === 'scalar' && !Number.isFinite(result.value)) {
       throw new Refusal('too-large', 'The result is beyond the range of numbers here.');
     }
@@ -57,7 +59,7 @@ class Calculation {
       case 'constant':
         return node.name === 'pi' ? plain(Math.PI) : (constantValues.get(node.name) as Scalar);
       case 'symbol':
-        return this.context.symbolValue(node.name);
+        return this.symbol(node.name);
       case 'column':
         return this.context.column(node.handle, node.name);
       case 'span':
@@ -72,6 +74,12 @@ class Calculation {
       case 'call':
         return this.call(node);
     }
+  }
+
+  private symbol(name: string): Quantity {
+    const value = this.context.symbolValue(name);
+    // A line that is nothing but a symbol has nothing to gain.
+    return value.kind === 'scalar' && this.tree.kind !== 'symbol' ? this.leaves.local(name, value) : value;
   }
 
   private literal(node: Expression & { kind: 'literal' }): Scalar {
@@ -192,7 +200,7 @@ class Calculation {
   }
 
   private uncertainty(name: string, operand: Operand): Scalar {
-    const { value } = operand;
+    const value = this.leaves.expand(operand.value);
     if (value.kind === 'column') {
       throw new Refusal(
         'not-allowed',
@@ -245,7 +253,7 @@ class Calculation {
     const { name, of } = node;
     const [first] = of;
     if (!first) throw new Refusal('syntax', `${name} needs a column, as in ${name}(t1.I, on).`);
-    const column = this.columnOf(first, name);
+    const column = this.leaves.expand(this.columnOf(first, name));
     const last = of.at(-1);
     const span = last?.kind === 'span' ? this.context.span(column.handle, last.name) : null;
     const over: Over = span ?? allRows(column);
@@ -255,7 +263,7 @@ class Calculation {
       const [against, ...more] = between;
       if (more.length > 0)
         throw new Refusal('syntax', `Write ${name}(t1.I, t1.V), ${name}(t1.I, t1.V, on) or ${name}(t1.I, on).`);
-      const x = against ? this.columnOf(against, name) : span?.axis();
+      const x = against ? this.leaves.expand(this.columnOf(against, name)) : span?.axis();
       if (!x)
         throw new Refusal(
           'syntax',
