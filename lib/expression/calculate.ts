@@ -128,7 +128,8 @@ class Calculation {
   }
 
   private binary(node: Expression & { kind: 'binary' }): Quantity {
-    const [left, right] = [this.operand(node.left), this.operand(node.right)];
+    const left = this.operand(node.left);
+    const right = this.operand(node.right);
     const label = () => plainText(node);
     const result =
       node.operator === '+'

@@ -255,6 +255,26 @@ describe('statistics', () => {
     expect(of('U').error?.code).toBe('correlated-dof');
   });
 
+  it('of one file are the same input under whatever span, trace or symbol', () => {
+    const samples = Float64Array.from(autoregressive(100, 0, 2));
+    const columns = [
+      { symbol: 't', unit: 's', samples: Float64Array.from({ length: 100 }, (_, i) => i) },
+      { symbol: 'I', unit: 'A', samples },
+    ];
+    const spans = [{ name: 'all', axis: 't', intervals: [[0, 99] as [number, number]] }];
+    const traces = [
+      traceOf('t1', columns, { spans, digest: 'one file' }),
+      traceOf('t2', columns, { spans, digest: 'one file' }),
+    ];
+    const { of } = calculate(
+      ['a = mean(t1.I) - mean(t1.I, all)', 'b = mean(t1.I) - mean(t2.I)', 's = mean(t1.I) + mean(t1.I, all)'],
+      traces,
+    );
+    expect(of('a')).toMatchObject({ value: 0, u: 0 });
+    expect(of('b').u).toBe(0);
+    expect(of('s').dof).toBeCloseTo(99, 9);
+  });
+
   it('warn of drift, of too short a trace and of no scatter', () => {
     const warnings = (samples: Float64Array) =>
       calculate(['x = mean(t1.I)'], [traceOf('t1', [{ symbol: 'I', unit: 'A', samples }])]).of('x').warnings;

@@ -168,13 +168,13 @@ export function plainText(node: Expression): string {
     case 'negative':
       return `−${inBrackets(node.of, 2)}`;
     case 'binary': {
+      const { operator, left, right } = node;
       const own = strength(node);
-      const sign = node.operator === '+' || node.operator === '-' ? ` ${node.operator} ` : node.operator;
-      return (
-        inBrackets(node.left, own) +
-        sign +
-        inBrackets(node.right, own + (node.operator === '+' || node.operator === '*' ? 0 : 1))
-      );
+      const sign = operator === '+' || operator === '-' ? ` ${operator} ` : operator;
+      // Powers are read from the right, − and / from the left.
+      const beside = operator === '^' ? 5 : own;
+      const behind = operator === '-' || operator === '/' ? own + 1 : own;
+      return inBrackets(left, beside) + sign + inBrackets(right, behind);
     }
     case 'call': {
       const given = node.of.map(plainText);

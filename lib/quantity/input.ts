@@ -7,7 +7,8 @@ export type RowRanges = readonly (readonly [number, number])[];
 
 /** What a statistic was taken from: kept so that two of them over common rows know their correlation. */
 export type Sample = {
-  traceId: string;
+  /** Of the file that the samples stand in. */
+  digest: string;
   statistic: 'mean' | 'other';
   /** One per row of the trace, NaN where missing. */
   values: Float64Array;
