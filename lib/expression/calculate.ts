@@ -1,27 +1,18 @@
-import { constants } from '@/lib/constants/constants';
 import { Refusal } from '@/lib/errors/refusal';
 import { negate } from '@/lib/quantity/arithmetic';
 import { combine } from '@/lib/quantity/combine';
 import { Leaves } from '@/lib/quantity/leaves';
-import { exactInput } from '@/lib/quantity/input';
-import { fromInput, plain, type Column, type Quantity, type Scalar } from '@/lib/quantity/quantity';
+import { plain, type Column, type Quantity, type Scalar } from '@/lib/quantity/quantity';
 import { dimensionless } from '@/lib/units/dimension';
-import { parseUnit } from '@/lib/units/parse';
 import type { Context } from './context';
+import { refuseUndetermined } from './determined';
 import { integralOf, slopeOf } from './line-statistics';
 import { scalarFunctions, statedFunctions } from './names';
 import { convert, extremeOfTwo, power, product, quotient, scalarFunction, sum, type Operand } from './operations';
 import type { Expression } from './parse';
-import { bareNumber, statedBy, statedLiteral } from './stated';
+import { bareNumber, constantValues, statedBy, statedLiteral } from './stated';
 import { allRows, countOf, extremeOf, meanOf, medianOf, named, sdOf, type Over } from './statistics';
 import { expressionText, plainText } from './typeset';
-
-const constantValues = new Map<string, Scalar>(
-  [...constants.values()].map(({ symbol, name, value, unit, source }) => [
-    symbol,
-    fromInput(exactInput(`constant:${symbol}`, `${symbol}, ${name}`, value, parseUnit(unit), source)),
-  ]),
-);
 
 /** What a literal of a line that was read before states: it is the same at every recalculation. */
 const statedBefore = new WeakMap<Expression, { id: string; symbol: string; scalar: Scalar }>();
@@ -42,9 +33,7 @@ class Calculation {
 
   run(): Quantity {
     const result = this.leaves.expand(this.value(this.tree));
-    if (result.kind === 'scalar' && !Number.isFinite(result.value)) {
-      throw new Refusal('too-large', 'The result is beyond the range of numbers here.');
-    }
+    if (result.kind === 'scalar') refuseUndetermined(result);
     return result;
   }
 
@@ -141,7 +130,8 @@ class Calculation {
             : node.operator === '/'
               ? quotient(left, right, label)
               : power(left, right, label);
-    if (result.kind === 'scalar' && !Number.isFinite(result.value)) {
+    if (result.kind === 'column') this.context.spend(result.values.length * (1 + result.terms.size));
+    else if (!Number.isFinite(result.value)) {
       throw new Refusal('too-large', `\`${expressionText(node)}\` is beyond the range of numbers here.`);
     }
     return result;
@@ -260,6 +250,7 @@ class Calculation {
     const over: Over = span ?? allRows(column);
     const between = of.slice(1, span ? -1 : undefined);
     const { statistics, warn } = this.context;
+    this.context.spend(column.values.length * (4 + column.terms.size));
     if (name === 'slope' || name === 'integral') {
       const [against, ...more] = between;
       if (more.length > 0)

@@ -35,6 +35,7 @@ function bareContext(context: Pick<Context, 'correlations' | 'statistics'>, id: 
     span: (_, name) => refuse(name),
     isSymbol: () => false,
     warn: () => undefined,
+    spend: () => undefined,
   };
 }
 

@@ -27,4 +27,6 @@ export type Context = {
   correlations: Correlations;
   statistics: StatisticsCache;
   warn: (sentence: string) => void;
+  /** Counts work with columns, in rows times operations; refuses where it is too much. */
+  spend: (amount: number) => void;
 };

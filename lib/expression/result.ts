@@ -107,12 +107,13 @@ export function columnResult(
   const values = new Float64Array(column.values.length);
   for (let row = 0; row < values.length; row++) {
     const value = column.values[row] as number;
-    values[row] =
+    const shown =
       unit.scale === 'celsius'
         ? value - celsiusZero
         : unit.scale === 'level'
           ? levelOfWatts(value)
           : inUnit(value, unit);
+    values[row] = Number.isFinite(shown) ? shown : NaN;
   }
   const result: ValueResult = {
     ...blank(cell, line, 'ok'),
