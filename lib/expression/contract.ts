@@ -107,7 +107,29 @@ export type Sheet = {
   columns: Map<string, DerivedColumn>;
 };
 
-export type SheetInput = { cells: CellSource[]; traces: TraceSource[] };
+/**
+ * A quantity that lines name with a point and that stands neither in a line nor in a trace: the result of an analysis
+ * (`esc1.tau`), a parameter of the device or the cooldown (`device.alpha_exit`).
+ */
+export type GivenQuantity = {
+  name: string;
+  /** As budgets name it: `tau of esc1`. */
+  label: string;
+  /** In `unit`; `u` null where no uncertainty is stated. */
+  value: number;
+  unit: string;
+  u: number | null;
+  /** null: infinitely many. */
+  dof: number | null;
+  type: 'A' | 'B';
+  note: string | null;
+  /** Results of one fit are one group with its degrees of freedom; null for a quantity by itself. */
+  group: string | null;
+  /** Correlation coefficients with other given quantities, by their names; each pair is stated on both. */
+  correlation: Record<string, number> | null;
+};
+
+export type SheetInput = { cells: CellSource[]; traces: TraceSource[]; given?: GivenQuantity[] };
 
 // The implementation's face:
 //   export const engineVersion: string                                             lib/expression/engine.ts

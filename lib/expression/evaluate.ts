@@ -5,6 +5,7 @@ import { calculate } from './calculate';
 import { Pending, type Context } from './context';
 import type { CellSource, DerivedColumn, Sheet, SheetInput, ValueResult } from './contract';
 import { engineVersion } from './engine';
+import { GivenStore, type KeptGiven } from './given';
 import { order } from './graph';
 import { parseLine, type Line } from './parse';
 import { placed } from './placement';
@@ -33,6 +34,7 @@ type Memory = {
   parsed: Map<string, Parsed>;
   outcomes: Map<string, Outcome>;
   traces: StoredTraces;
+  given: KeptGiven;
   correlations: Correlations;
   statistics: StatisticsCache;
 };
@@ -70,6 +72,7 @@ class Evaluation {
   private readonly byNumber: (Outcome | undefined)[] = [];
   private readonly work = new Work();
   private readonly store: TraceStore;
+  private readonly given: GivenStore;
   private readonly correlations: Correlations;
   private readonly statistics: StatisticsCache;
 
@@ -79,6 +82,7 @@ class Evaluation {
   ) {
     this.correlations = memory?.correlations ?? new Correlations();
     this.statistics = memory?.statistics ?? new StatisticsCache();
+    this.given = new GivenStore(input.given ?? [], memory?.given);
     this.store = new TraceStore(input.traces, memory?.traces, {
       correlations: this.correlations,
       statistics: this.statistics,
@@ -114,7 +118,14 @@ class Evaluation {
     });
     const sheet: Sheet = { engine: engineVersion, results, columns };
     const { parsed, outcomes, correlations, statistics } = this;
-    memories.set(sheet, { parsed, outcomes, traces: this.store.stored, correlations, statistics });
+    memories.set(sheet, {
+      parsed,
+      outcomes,
+      traces: this.store.stored,
+      given: this.given.kept,
+      correlations,
+      statistics,
+    });
     return sheet;
   }
 
@@ -203,7 +214,7 @@ class Evaluation {
       case 'defined':
         return this.bySymbol.has(name);
       case 'column':
-        return this.outcomeOf(name) ?? this.store.column(name);
+        return this.outcomeOf(name) ?? this.given.find(name) ?? this.store.column(name);
       case 'span':
         return this.store.span(name);
     }
@@ -269,9 +280,9 @@ class Evaluation {
         const name = `${handle}.${column}`;
         ask('column', name);
         const outcome = this.outcomeOf(name);
-        const quantity = outcome ? quantityOf(name, outcome) : this.store.columnValue(handle, column);
-        if (quantity.kind !== 'column') throw new Refusal('not-allowed', `\`${name}\` is not a column.`);
-        return quantity;
+        if (outcome) return quantityOf(name, outcome);
+        const given = this.given.find(name);
+        return given ? this.given.value(given) : this.store.columnValue(handle, column);
       },
       span: (handle, name) => {
         ask('span', `${handle}.${name}`);

@@ -27,11 +27,11 @@ type Contribution = { input: Input; amount: number; group: string };
  */
 export function combine(scalar: Scalar, correlations: Correlations): Combined {
   let sampled = 0;
-  for (const { input } of scalar.terms.values()) if (input.sample !== null && input.u !== 0) sampled++;
+  for (const { input } of scalar.terms.values()) if (correlates(input) && input.u !== 0) sampled++;
   return sampled > 1 ? combineCorrelated(scalar, correlations) : combineIndependent(scalar);
 }
 
-/** Without two statistics of samples nothing is correlated: every input is a group of its own. */
+/** Without two inputs that may be correlated every one is a group of its own. */
 function combineIndependent(scalar: Scalar): Combined {
   let variance = 0;
   for (const { input, c } of scalar.terms.values()) variance += (c * input.u) ** 2;
@@ -44,6 +44,10 @@ function combineIndependent(scalar: Scalar): Combined {
   return { u: Math.sqrt(variance), dof, k: coverageFactor(coverage, dof), warnings: [] };
 }
 
+/** Whether an input may be correlated with another: statistics of samples, and results of one fit. */
+const correlates = (input: Input): boolean =>
+  input.sample !== null || input.correlated !== undefined || input.group !== undefined;
+
 function combineCorrelated(scalar: Scalar, correlations: Correlations): Combined {
   const sampled: Contribution[] = [];
   const warnings: string[] = [];
@@ -51,7 +55,9 @@ function combineCorrelated(scalar: Scalar, correlations: Correlations): Combined
   for (const { input, c } of scalar.terms.values()) {
     const amount = c * input.u;
     squares += amount * amount;
-    if (amount !== 0 && input.sample !== null) sampled.push({ input, amount, group: input.sample.group });
+    if (amount !== 0 && correlates(input)) {
+      sampled.push({ input, amount, group: input.sample?.group ?? input.group ?? input.id });
+    }
   }
   const groups = new Map<string, { variance: number; dof: number | null }>();
   for (const { input, amount, group } of sampled) {
@@ -93,7 +99,7 @@ function combineCorrelated(scalar: Scalar, correlations: Correlations): Combined
     if (dof !== null && part > 0) below += (part / variance) ** 2 / dof;
   }
   for (const { input, c } of scalar.terms.values()) {
-    if (input.sample === null && input.dof !== null) below += ((c * input.u) ** 2 / variance) ** 2 / input.dof;
+    if (!correlates(input) && input.dof !== null) below += ((c * input.u) ** 2 / variance) ** 2 / input.dof;
   }
   const dof = below > 0 ? Math.max(1, 1 / below) : null;
   return { u, dof, k: coverageFactor(coverage, dof), warnings };
