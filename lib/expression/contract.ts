@@ -99,6 +99,18 @@ export type DerivedColumn = {
   unit: string;
   /** In `unit`, one per row of the trace; NaN where undefined. */
   values: Float64Array;
+  /** Inputs that all rows have in common (offset, gain, scalars): a fit takes them apart from the scatter of the rows. */
+  shared: SharedInput[];
+};
+
+export type SharedInput = {
+  inputId: string;
+  /** As a reader knows it: `gain of t1.I, CAL-0181`. */
+  input: string;
+  dof: number | null;
+  distribution: Distribution;
+  /** By how much each row moves, in the column's unit, where the input is larger by its standard uncertainty. */
+  shift: Float64Array;
 };
 
 export type Sheet = {

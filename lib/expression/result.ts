@@ -3,15 +3,13 @@ import { combine, coverage } from '@/lib/quantity/combine';
 import type { Correlations } from '@/lib/quantity/correlation';
 import { show, writeText, type Shown } from '@/lib/quantity/format';
 import type { Column, Scalar } from '@/lib/quantity/quantity';
-import { inUnit, readableUnit } from '@/lib/units/choose';
 import { sameDimension } from '@/lib/units/dimension';
 import { parseUnit, type Unit } from '@/lib/units/parse';
-import { celsiusZero } from '@/lib/units/table';
-import { levelOfWatts } from '@/lib/quantity/format';
 import { budgetOf } from './budget';
 import type { BudgetLine, CellError, CellSource, DerivedColumn, ValueResult } from './contract';
 import { unitName } from './operations';
 import type { Line } from './parse';
+import { columnUnit, derivedColumn } from './read-column';
 import { resultMathml, wordsMathml } from './typeset';
 
 /** A result with nothing in it but what the line itself says. */
@@ -104,17 +102,6 @@ export function columnResult(
 ): { result: ValueResult; derived: DerivedColumn } {
   const unit = wishedUnit(cell, line, column) ?? columnUnit(column);
   const words = `column, ${column.values.length} ${column.values.length === 1 ? 'row' : 'rows'}`;
-  const values = new Float64Array(column.values.length);
-  for (let row = 0; row < values.length; row++) {
-    const value = column.values[row] as number;
-    const shown =
-      unit.scale === 'celsius'
-        ? value - celsiusZero
-        : unit.scale === 'level'
-          ? levelOfWatts(value)
-          : inUnit(value, unit);
-    values[row] = Number.isFinite(shown) ? shown : NaN;
-  }
   const result: ValueResult = {
     ...blank(cell, line, 'ok'),
     text: words,
@@ -122,16 +109,5 @@ export function columnResult(
     unit: unit.text,
     warnings: [...new Set(warnings)],
   };
-  return { result, derived: { symbol: line.symbol, handle: column.handle, unit: unit.text, values } };
-}
-
-/** The unit in which the largest sample reads best. */
-function columnUnit(column: Column): Unit {
-  if (column.scale !== 'linear' && column.hint) return column.hint;
-  let largest = 0;
-  for (let row = 0; row < column.values.length; row++) {
-    const size = Math.abs(column.values[row] as number);
-    if (size > largest) largest = size;
-  }
-  return readableUnit(column.dimension, largest, column.hint);
+  return { result, derived: derivedColumn(line.symbol, column, unit) };
 }
