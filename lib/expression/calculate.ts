@@ -1,26 +1,21 @@
-import { constants } from '@/lib/constants/constants';
 import { Refusal } from '@/lib/errors/refusal';
 import { negate } from '@/lib/quantity/arithmetic';
 import { combine } from '@/lib/quantity/combine';
-import { exactInput } from '@/lib/quantity/input';
-import { fromInput, plain, type Column, type Quantity, type Scalar } from '@/lib/quantity/quantity';
+import { Leaves } from '@/lib/quantity/leaves';
+import { plain, type Column, type Quantity, type Scalar } from '@/lib/quantity/quantity';
 import { dimensionless } from '@/lib/units/dimension';
-import { parseUnit } from '@/lib/units/parse';
 import type { Context } from './context';
+import { refuseUndetermined } from './determined';
 import { integralOf, slopeOf } from './line-statistics';
 import { scalarFunctions, statedFunctions } from './names';
 import { convert, extremeOfTwo, power, product, quotient, scalarFunction, sum, type Operand } from './operations';
 import type { Expression } from './parse';
-import { bareNumber, statedBy, statedLiteral } from './stated';
+import { bareNumber, constantValues, statedBy, statedLiteral } from './stated';
 import { allRows, countOf, extremeOf, meanOf, medianOf, named, sdOf, type Over } from './statistics';
 import { expressionText, plainText } from './typeset';
 
-const constantValues = new Map<string, Scalar>(
-  [...constants.values()].map(({ symbol, name, value, unit, source }) => [
-    symbol,
-    fromInput(exactInput(`constant:${symbol}`, `${symbol}, ${name}`, value, parseUnit(unit), source)),
-  ]),
-);
+/** What a literal of a line that was read before states: it is the same at every recalculation. */
+const statedBefore = new WeakMap<Expression, { id: string; symbol: string; scalar: Scalar }>();
 
 /** Walks a line's tree. Throws a Refusal, or Pending where samples are not there yet. */
 export function calculate(tree: Expression, context: Context): Quantity {
@@ -29,6 +24,7 @@ export function calculate(tree: Expression, context: Context): Quantity {
 
 class Calculation {
   private calls = 0;
+  private readonly leaves = new Leaves();
 
   constructor(
     private readonly tree: Expression,
@@ -36,10 +32,8 @@ class Calculation {
   ) {}
 
   run(): Quantity {
-    const result = this.value(this.tree);
-    if (result.kind === 'scalar' && !Number.isFinite(result.value)) {
-      throw new Refusal('too-large', 'The result is beyond the range of numbers here.');
-    }
+    const result = this.leaves.expand(this.value(this.tree));
+    if (result.kind === 'scalar') refuseUndetermined(result);
     return result;
   }
 
@@ -54,7 +48,7 @@ class Calculation {
       case 'constant':
         return node.name === 'pi' ? plain(Math.PI) : (constantValues.get(node.name) as Scalar);
       case 'symbol':
-        return this.context.symbolValue(node.name);
+        return this.symbol(node.name);
       case 'column':
         return this.context.column(node.handle, node.name);
       case 'span':
@@ -71,7 +65,14 @@ class Calculation {
     }
   }
 
-  private literal({ literal, place }: Expression & { kind: 'literal' }): Scalar {
+  private symbol(name: string): Quantity {
+    const value = this.context.symbolValue(name);
+    // A line that is nothing but a symbol has nothing to gain.
+    return value.kind === 'scalar' && this.tree.kind !== 'symbol' ? this.leaves.local(name, value) : value;
+  }
+
+  private literal(node: Expression & { kind: 'literal' }): Scalar {
+    const { literal, place } = node;
     for (const name of literal.ambiguous) {
       if (name === 'h' || this.context.isSymbol(name)) {
         const other = name === 'h' ? 'the Planck constant' : `the symbol ${name}`;
@@ -88,7 +89,14 @@ class Calculation {
     const whole = this.isWhole(place);
     if (!whole && literal.unit === null && literal.u === null && !literal.exactly) return bareNumber(literal);
     const { id, symbol } = this.context;
-    return statedLiteral(literal, { id: `${id}#${place}`, label: whole ? symbol : `${literal.text} in ${symbol}` });
+    const before = statedBefore.get(node);
+    if (before?.id === id && before.symbol === symbol) return before.scalar;
+    const scalar = statedLiteral(literal, {
+      id: `${id}#${place}`,
+      label: whole ? symbol : `${literal.text} in ${symbol}`,
+    });
+    statedBefore.set(node, { id, symbol, scalar });
+    return scalar;
   }
 
   /** Whether the line is nothing but this literal, with or without a sign. */
@@ -109,7 +117,8 @@ class Calculation {
   }
 
   private binary(node: Expression & { kind: 'binary' }): Quantity {
-    const [left, right] = [this.operand(node.left), this.operand(node.right)];
+    const left = this.operand(node.left);
+    const right = this.operand(node.right);
     const label = () => plainText(node);
     const result =
       node.operator === '+'
@@ -121,7 +130,8 @@ class Calculation {
             : node.operator === '/'
               ? quotient(left, right, label)
               : power(left, right, label);
-    if (result.kind === 'scalar' && !Number.isFinite(result.value)) {
+    if (result.kind === 'column') this.context.spend(result.values.length * (1 + result.terms.size));
+    else if (!Number.isFinite(result.value)) {
       throw new Refusal('too-large', `\`${expressionText(node)}\` is beyond the range of numbers here.`);
     }
     return result;
@@ -181,7 +191,7 @@ class Calculation {
   }
 
   private uncertainty(name: string, operand: Operand): Scalar {
-    const { value } = operand;
+    const value = this.leaves.expand(operand.value);
     if (value.kind === 'column') {
       throw new Refusal(
         'not-allowed',
@@ -234,17 +244,18 @@ class Calculation {
     const { name, of } = node;
     const [first] = of;
     if (!first) throw new Refusal('syntax', `${name} needs a column, as in ${name}(t1.I, on).`);
-    const column = this.columnOf(first, name);
+    const column = this.leaves.expand(this.columnOf(first, name));
     const last = of.at(-1);
     const span = last?.kind === 'span' ? this.context.span(column.handle, last.name) : null;
     const over: Over = span ?? allRows(column);
     const between = of.slice(1, span ? -1 : undefined);
     const { statistics, warn } = this.context;
+    this.context.spend(column.values.length * (4 + column.terms.size));
     if (name === 'slope' || name === 'integral') {
       const [against, ...more] = between;
       if (more.length > 0)
         throw new Refusal('syntax', `Write ${name}(t1.I, t1.V), ${name}(t1.I, t1.V, on) or ${name}(t1.I, on).`);
-      const x = against ? this.columnOf(against, name) : span?.axis();
+      const x = against ? this.leaves.expand(this.columnOf(against, name)) : span?.axis();
       if (!x)
         throw new Refusal(
           'syntax',

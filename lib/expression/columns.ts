@@ -35,6 +35,7 @@ function bareContext(context: Pick<Context, 'correlations' | 'statistics'>, id: 
     span: (_, name) => refuse(name),
     isSymbol: () => false,
     warn: () => undefined,
+    spend: () => undefined,
   };
 }
 
@@ -97,11 +98,11 @@ export function fileColumn(
   const raw = rawSamples(trace, index, name);
   const values = new Float64Array(raw.length);
   for (let row = 0; row < raw.length; row++) values[row] = toSi(raw[row] as number, unit);
-  const { handle, traceId } = trace;
+  const { handle, digest } = trace;
   let column: Column = {
     kind: 'column',
     handle,
-    traceId,
+    digest,
     key: name,
     label: name,
     values,

@@ -20,11 +20,14 @@ export type Context = {
   id: string;
   symbol: string;
   symbolValue: (name: string) => Quantity;
-  column: (handle: string, name: string) => Column;
+  /** A column (`t1.I`), or a quantity that is given under such a name (`esc1.tau`). */
+  column: (handle: string, name: string) => Quantity;
   span: (handle: string, name: string) => SpanRows;
   /** Whether some line defines this symbol. */
   isSymbol: (name: string) => boolean;
   correlations: Correlations;
   statistics: StatisticsCache;
   warn: (sentence: string) => void;
+  /** Counts work with columns, in rows times operations; refuses where it is too much. */
+  spend: (amount: number) => void;
 };

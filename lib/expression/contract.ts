@@ -99,6 +99,18 @@ export type DerivedColumn = {
   unit: string;
   /** In `unit`, one per row of the trace; NaN where undefined. */
   values: Float64Array;
+  /** Inputs that all rows have in common (offset, gain, scalars): a fit takes them apart from the scatter of the rows. */
+  shared: SharedInput[];
+};
+
+export type SharedInput = {
+  inputId: string;
+  /** As a reader knows it: `gain of t1.I, CAL-0181`. */
+  input: string;
+  dof: number | null;
+  distribution: Distribution;
+  /** By how much each row moves, in the column's unit, where the input is larger by its standard uncertainty. */
+  shift: Float64Array;
 };
 
 export type Sheet = {
@@ -107,7 +119,29 @@ export type Sheet = {
   columns: Map<string, DerivedColumn>;
 };
 
-export type SheetInput = { cells: CellSource[]; traces: TraceSource[] };
+/**
+ * A quantity that lines name with a point and that stands neither in a line nor in a trace: the result of an analysis
+ * (`esc1.tau`), a parameter of the device or the cooldown (`device.alpha_exit`).
+ */
+export type GivenQuantity = {
+  name: string;
+  /** As budgets name it: `tau of esc1`. */
+  label: string;
+  /** In `unit`; `u` null where no uncertainty is stated. */
+  value: number;
+  unit: string;
+  u: number | null;
+  /** null: infinitely many. */
+  dof: number | null;
+  type: 'A' | 'B';
+  note: string | null;
+  /** Results of one fit are one group with its degrees of freedom; null for a quantity by itself. */
+  group: string | null;
+  /** Correlation coefficients with other given quantities, by their names; each pair is stated on both. */
+  correlation: Record<string, number> | null;
+};
+
+export type SheetInput = { cells: CellSource[]; traces: TraceSource[]; given?: GivenQuantity[] };
 
 // The implementation's face:
 //   export const engineVersion: string                                             lib/expression/engine.ts

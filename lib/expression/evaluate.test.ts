@@ -235,6 +235,7 @@ describe('errors', () => {
     ['t1.I', 'unknown-name', 'no trace'],
     ['0^(0-1)', 'division-by-zero', '0'],
     ['(0-2)^0.5', 'domain', 'negative'],
+    ['asin(x_1)', 'domain', 'first order'],
     ['rel(I_on - I_on)', 'division-by-zero', 'relative'],
     ['5 K/h', 'syntax', 'hour'],
     ['rectangular(0 V, 2 mA)', 'unit-clash', 'rectangular'],
@@ -242,7 +243,7 @@ describe('errors', () => {
     ['normal(1 V, 1 mV, 0)', 'domain', 'positive'],
     ['convert(I_on, V)', 'unit-clash', 'V'],
   ])('%s is %s', (line, code, part) => {
-    const { state, error, text, value } = y(line, 'f = 200 kHz exactly', 'I_on = 29.66(12) fA');
+    const { state, error, text, value } = y(line, 'f = 200 kHz exactly', 'I_on = 29.66(12) fA', 'x_1 = 1.00(1)');
     expect(state).toBe('error');
     expect(error?.code).toBe(code);
     expect(error?.message).toContain(part);

@@ -5,12 +5,15 @@ import { calculate } from './calculate';
 import { Pending, type Context } from './context';
 import type { CellSource, DerivedColumn, Sheet, SheetInput, ValueResult } from './contract';
 import { engineVersion } from './engine';
+import { GivenStore, type KeptGiven } from './given';
 import { order } from './graph';
 import { parseLine, type Line } from './parse';
+import { placed } from './placement';
 import { columnResult, failed, pendingResult, scalarResult } from './result';
 import { StatisticsCache } from './statistics';
 import { TraceStore, type StoredTraces } from './trace-store';
 import { unknownName } from './unknown-name';
+import { Work } from './work';
 
 /** What became of a line; kept from sheet to sheet while nothing that it read has changed. */
 type Outcome = {
@@ -20,6 +23,7 @@ type Outcome = {
   derived: DerivedColumn | null;
   /** What was asked while calculating, and the answer: equal answers give an equal outcome. */
   reads: readonly Read[];
+  work: number;
 };
 
 type Read = { kind: 'symbol' | 'column' | 'span' | 'defined'; name: string; answer: unknown };
@@ -30,6 +34,7 @@ type Memory = {
   parsed: Map<string, Parsed>;
   outcomes: Map<string, Outcome>;
   traces: StoredTraces;
+  given: KeptGiven;
   correlations: Correlations;
   statistics: StatisticsCache;
 };
@@ -65,7 +70,9 @@ class Evaluation {
   private readonly bySymbol = new Map<string, number>();
   private readonly lines: Parsed[] = [];
   private readonly byNumber: (Outcome | undefined)[] = [];
+  private readonly work = new Work();
   private readonly store: TraceStore;
+  private readonly given: GivenStore;
   private readonly correlations: Correlations;
   private readonly statistics: StatisticsCache;
 
@@ -75,6 +82,7 @@ class Evaluation {
   ) {
     this.correlations = memory?.correlations ?? new Correlations();
     this.statistics = memory?.statistics ?? new StatisticsCache();
+    this.given = new GivenStore(input.given ?? [], memory?.given);
     this.store = new TraceStore(input.traces, memory?.traces, {
       correlations: this.correlations,
       statistics: this.statistics,
@@ -110,7 +118,14 @@ class Evaluation {
     });
     const sheet: Sheet = { engine: engineVersion, results, columns };
     const { parsed, outcomes, correlations, statistics } = this;
-    memories.set(sheet, { parsed, outcomes, traces: this.store.stored, correlations, statistics });
+    memories.set(sheet, {
+      parsed,
+      outcomes,
+      traces: this.store.stored,
+      given: this.given.kept,
+      correlations,
+      statistics,
+    });
     return sheet;
   }
 
@@ -174,9 +189,12 @@ class Evaluation {
     const before = this.memory?.outcomes.get(cell.id);
     if (stop || !line) {
       const result = failed(cell, line, stop ?? new Refusal('syntax', 'This line cannot be read.'));
-      return { cell, quantity: null, result, derived: null, reads: [] };
+      return { cell, quantity: null, result, derived: null, reads: [], work: 0 };
     }
-    if (before && this.unchanged(before, cell)) return before;
+    if (before && this.unchanged(before, cell)) {
+      this.work.takeOver(before.work, before.derived?.values.length ?? 0);
+      return before;
+    }
     return this.calculated(cell, line);
   }
 
@@ -196,7 +214,7 @@ class Evaluation {
       case 'defined':
         return this.bySymbol.has(name);
       case 'column':
-        return this.outcomeOf(name) ?? this.store.column(name);
+        return this.outcomeOf(name) ?? this.given.find(name) ?? this.store.column(name);
       case 'span':
         return this.store.span(name);
     }
@@ -210,49 +228,27 @@ class Evaluation {
   private calculated(cell: CellSource, line: Line): Outcome {
     const reads: Read[] = [];
     const warnings: string[] = [];
+    const start = this.work.done;
     const done = (quantity: Quantity | null, result: ValueResult, derived: DerivedColumn | null = null): Outcome => ({
       cell: { ...cell },
       quantity,
       result,
       derived,
       reads,
+      work: this.work.done - start,
     });
     try {
-      const quantity = this.placed(line, calculate(line.tree, this.context(cell, line, reads, warnings)));
+      const quantity = placed(line, calculate(line.tree, this.context(cell, line, reads, warnings)));
       if (quantity.kind === 'scalar') {
         return done(quantity, scalarResult(cell, line, quantity, this.correlations, warnings));
       }
+      this.work.keep(quantity.values.length);
       const { result, derived } = columnResult(cell, line, quantity, warnings);
       return done(quantity, result, derived);
     } catch (error) {
       if (error instanceof Pending) return done(null, pendingResult(cell, line));
       return done(null, failed(cell, line, asRefusal(error)));
     }
-  }
-
-  /** A column belongs left of = as `t1.P`, a single value as a symbol. */
-  private placed(line: Line, quantity: Quantity): Quantity {
-    const { column, symbol } = line;
-    if (quantity.kind === 'scalar') {
-      if (!column) return quantity;
-      throw new Refusal(
-        'not-allowed',
-        `\`${symbol}\` names a column of ${column.handle}, but a single value stands right of =: write ${column.name} = … instead.`,
-      );
-    }
-    if (!column) {
-      throw new Refusal(
-        'not-allowed',
-        `A column stands right of =: write ${quantity.handle}.${symbol} = …, or take its mean.`,
-      );
-    }
-    if (column.handle !== quantity.handle) {
-      throw new Refusal(
-        'not-allowed',
-        `What stands right of = is a column of ${quantity.handle}: write ${quantity.handle}.${column.name} = ….`,
-      );
-    }
-    return { ...quantity, key: symbol, label: symbol };
   }
 
   private context(cell: CellSource, line: Line, reads: Read[], warnings: string[]): Context {
@@ -273,6 +269,7 @@ class Evaluation {
       correlations: this.correlations,
       statistics: this.statistics,
       warn: (sentence) => warnings.push(sentence),
+      spend: (amount) => this.work.spend(amount),
       isSymbol: (name) => ask('defined', name) === true,
       symbolValue: (name) => {
         const outcome = ask('symbol', name) as Outcome | undefined;
@@ -283,9 +280,9 @@ class Evaluation {
         const name = `${handle}.${column}`;
         ask('column', name);
         const outcome = this.outcomeOf(name);
-        const quantity = outcome ? quantityOf(name, outcome) : this.store.columnValue(handle, column);
-        if (quantity.kind !== 'column') throw new Refusal('not-allowed', `\`${name}\` is not a column.`);
-        return quantity;
+        if (outcome) return quantityOf(name, outcome);
+        const given = this.given.find(name);
+        return given ? this.given.value(given) : this.store.columnValue(handle, column);
       },
       span: (handle, name) => {
         ask('span', `${handle}.${name}`);

@@ -39,6 +39,7 @@ function refuseOffScale(operand: Operand, what: string): void {
 }
 
 function sumScale(a: Operand, b: Operand, sign: 1 | -1): Unit['scale'] {
+  if (a.value.scale === 'linear' && b.value.scale === 'linear') return 'linear';
   for (const operand of [a, b]) if (operand.value.scale === 'level') refuseOffScale(operand, '');
   const [left, right] = [a.value.scale === 'celsius', b.value.scale === 'celsius'];
   if (left && right && sign === 1)
@@ -52,7 +53,8 @@ function sumScale(a: Operand, b: Operand, sign: 1 | -1): Unit['scale'] {
 }
 
 export function sum(a: Operand, b: Operand, sign: 1 | -1, label: () => string): Quantity {
-  const [x, y] = [a.value, b.value];
+  const x = a.value;
+  const y = b.value;
   arithmetic.sameRows(x, y);
   if (!sameDimension(x.dimension, y.dimension)) {
     throw new Refusal(
@@ -78,7 +80,8 @@ function productHint(a: Quantity, b: Quantity): Unit | null {
 }
 
 export function product(a: Operand, b: Operand, label: () => string): Quantity {
-  for (const operand of [a, b]) refuseOffScale(operand, 'a product of it');
+  refuseOffScale(a, 'a product of it');
+  refuseOffScale(b, 'a product of it');
   arithmetic.sameRows(a.value, b.value);
   return arithmetic.multiply(a.value, b.value, {
     hint: productHint(a.value, b.value),
@@ -87,7 +90,8 @@ export function product(a: Operand, b: Operand, label: () => string): Quantity {
 }
 
 export function quotient(a: Operand, b: Operand, label: () => string): Quantity {
-  for (const operand of [a, b]) refuseOffScale(operand, 'a quotient of it');
+  refuseOffScale(a, 'a quotient of it');
+  refuseOffScale(b, 'a quotient of it');
   arithmetic.sameRows(a.value, b.value);
   if (b.value.kind === 'scalar' && b.value.value === 0) {
     throw new Refusal('division-by-zero', `\`${b.written()}\` is 0: nothing can be divided by it.`);
@@ -99,7 +103,8 @@ export function quotient(a: Operand, b: Operand, label: () => string): Quantity 
 const uncertain = (quantity: Quantity): boolean => [...quantity.terms.values()].some(({ input }) => input.u > 0);
 
 export function power(a: Operand, b: Operand, label: () => string): Quantity {
-  for (const operand of [a, b]) refuseOffScale(operand, 'a power of it');
+  refuseOffScale(a, 'a power of it');
+  refuseOffScale(b, 'a power of it');
   const [x, y] = [a.value, b.value];
   if (!isDimensionless(y.dimension)) throw new Refusal('unit-clash', `${inUnit(b)}: an exponent is a pure number.`);
   const text = labelOf(x, y, label);

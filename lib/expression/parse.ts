@@ -4,6 +4,7 @@ import type { Unit } from '@/lib/units/parse';
 import type { Literal } from './literal';
 import { columnFunctions, constantNames, functionNames, limits } from './names';
 import { scanExpression, scanLine, type Scanned } from './scan';
+import { expressionTex, symbolMathml, symbolTex } from './typeset';
 
 /** What a line may consist of; nothing else comes out of the parser's tree. */
 export type Expression =
@@ -20,6 +21,10 @@ export type Line = Scanned & {
   tree: Expression;
   /** Names in order of use, each once: symbols, `t1.I`, and the words that may be spans. */
   names: readonly { kind: 'symbol' | 'column' | 'span'; name: string }[];
+  /** The same as plain text. */
+  dependsOn: string[];
+  /** Typeset once, when the line is read. */
+  tex: { symbol: string; expression: string; symbolMathml: string };
 };
 
 // Only the parser is taken from the library: none of its functions, units or constants exist here, and nothing of its
@@ -31,7 +36,10 @@ type ParsedNode = { type: string } & Record<string, unknown>;
 /** Reads `symbol = expression`. Throws a Refusal. */
 export function parseLine(source: string): Line {
   const scanned = scanLine(source);
-  return { ...scanned, ...treeOf(scanned.expression, scanned.places) };
+  const { tree, names } = treeOf(scanned.expression, scanned.places);
+  const { symbol } = scanned;
+  const tex = { symbol: symbolTex(symbol), expression: expressionTex(tree), symbolMathml: symbolMathml(symbol) };
+  return { ...scanned, tree, names, dependsOn: names.map(({ name }) => name), tex };
 }
 
 /** Reads an expression by itself, as a stated quantity may be. */

@@ -3,16 +3,14 @@ import { combine, coverage } from '@/lib/quantity/combine';
 import type { Correlations } from '@/lib/quantity/correlation';
 import { show, writeText, type Shown } from '@/lib/quantity/format';
 import type { Column, Scalar } from '@/lib/quantity/quantity';
-import { inUnit, readableUnit } from '@/lib/units/choose';
 import { sameDimension } from '@/lib/units/dimension';
 import { parseUnit, type Unit } from '@/lib/units/parse';
-import { celsiusZero } from '@/lib/units/table';
-import { levelOfWatts } from '@/lib/quantity/format';
 import { budgetOf } from './budget';
 import type { BudgetLine, CellError, CellSource, DerivedColumn, ValueResult } from './contract';
 import { unitName } from './operations';
 import type { Line } from './parse';
-import { expressionTex, resultMathml, symbolTex, wordsMathml } from './typeset';
+import { columnUnit, derivedColumn } from './read-column';
+import { resultMathml, wordsMathml } from './typeset';
 
 /** A result with nothing in it but what the line itself says. */
 function blank(cell: CellSource, line: Line | null, state: ValueResult['state']): ValueResult {
@@ -21,8 +19,8 @@ function blank(cell: CellSource, line: Line | null, state: ValueResult['state'])
     symbol: line?.symbol ?? null,
     state,
     text: null,
-    symbolTex: line ? symbolTex(line.symbol) : null,
-    expressionTex: line ? expressionTex(line.tree) : null,
+    symbolTex: line?.tex.symbol ?? null,
+    expressionTex: line?.tex.expression ?? null,
     mathml: null,
     value: null,
     unit: null,
@@ -32,7 +30,7 @@ function blank(cell: CellSource, line: Line | null, state: ValueResult['state'])
     expanded: null,
     coverage,
     budget: [],
-    dependsOn: line ? line.names.map(({ name }) => name) : [],
+    dependsOn: line?.dependsOn ?? [],
     warnings: [],
     error: null,
   };
@@ -70,19 +68,16 @@ export function scalarResult(
 ): ValueResult {
   const combined = combine(scalar, correlations);
   const shown = show(scalar, combined.u, { unit: wishedUnit(cell, line, scalar), significant: cell.digits });
-  const text = writeText(shown);
-  const result: ValueResult = {
-    ...blank(cell, line, 'ok'),
-    text,
-    mathml: resultMathml(line.symbol, shown),
-    value: shown.value,
-    unit: shown.unit.text,
-    u: shown.u,
-    dof: combined.dof,
-    k: combined.k,
-    expanded: combined.k === null ? null : combined.k * shown.u,
-    warnings: [...new Set([...warnings, ...combined.warnings])],
-  };
+  const result = blank(cell, line, 'ok');
+  result.text = writeText(shown);
+  result.mathml = resultMathml(line.tex.symbolMathml, shown);
+  result.value = shown.value;
+  result.unit = shown.unit.text;
+  result.u = shown.u;
+  result.dof = combined.dof;
+  result.k = combined.k;
+  result.expanded = combined.k === null ? null : combined.k * shown.u;
+  result.warnings = [...new Set([...warnings, ...combined.warnings])];
   return withBudget(result, scalar, shown);
 }
 
@@ -107,33 +102,12 @@ export function columnResult(
 ): { result: ValueResult; derived: DerivedColumn } {
   const unit = wishedUnit(cell, line, column) ?? columnUnit(column);
   const words = `column, ${column.values.length} ${column.values.length === 1 ? 'row' : 'rows'}`;
-  const values = new Float64Array(column.values.length);
-  for (let row = 0; row < values.length; row++) {
-    const value = column.values[row] as number;
-    values[row] =
-      unit.scale === 'celsius'
-        ? value - celsiusZero
-        : unit.scale === 'level'
-          ? levelOfWatts(value)
-          : inUnit(value, unit);
-  }
   const result: ValueResult = {
     ...blank(cell, line, 'ok'),
     text: words,
-    mathml: wordsMathml(line.symbol, words),
+    mathml: wordsMathml(line.tex.symbolMathml, words),
     unit: unit.text,
     warnings: [...new Set(warnings)],
   };
-  return { result, derived: { symbol: line.symbol, handle: column.handle, unit: unit.text, values } };
-}
-
-/** The unit in which the largest sample reads best. */
-function columnUnit(column: Column): Unit {
-  if (column.scale !== 'linear' && column.hint) return column.hint;
-  let largest = 0;
-  for (let row = 0; row < column.values.length; row++) {
-    const size = Math.abs(column.values[row] as number);
-    if (size > largest) largest = size;
-  }
-  return readableUnit(column.dimension, largest, column.hint);
+  return { result, derived: derivedColumn(line.symbol, column, unit) };
 }

@@ -1,13 +1,22 @@
+import { constants } from '@/lib/constants/constants';
 import type { Distribution } from '@/lib/expression/contract';
 import { Refusal } from '@/lib/errors/refusal';
 import { wattsOfLevel } from '@/lib/quantity/format';
-import type { Input } from '@/lib/quantity/input';
+import { exactInput, type Input } from '@/lib/quantity/input';
 import { fromInput, plain, type Scalar } from '@/lib/quantity/quantity';
 import { fromUnit, one } from '@/lib/units/choose';
 import { sameDimension } from '@/lib/units/dimension';
 import { celsiusZero } from '@/lib/units/table';
-import type { Unit } from '@/lib/units/parse';
+import { parseUnit, type Unit } from '@/lib/units/parse';
 import type { Literal } from './literal';
+
+/** The constants as inputs without uncertainty. */
+export const constantValues = new Map<string, Scalar>(
+  [...constants.values()].map(({ symbol, name, value, unit, source }) => [
+    symbol,
+    fromInput(exactInput(`constant:${symbol}`, `${symbol}, ${name}`, value, parseUnit(unit), source)),
+  ]),
+);
 
 /** What a stated quantity is called in budgets, and its identity. */
 export type Named = { id: string; label: string };

@@ -34,7 +34,8 @@ export class StatisticsCache {
 }
 
 export function allRows(column: Column): Over {
-  return { rows: [[0, column.values.length]], rowsKey: 'all', name: null };
+  const { length } = column.values;
+  return { rows: [[0, length]], rowsKey: `0-${length}`, name: null };
 }
 
 export function gather(values: Float64Array, over: Over, label: string): Gathered {
@@ -98,7 +99,7 @@ export function statistic(
   resulting: Resulting,
 ): Scalar {
   const input: Input = {
-    id: `${name}|${column.traceId}|${column.key}|${over.rowsKey}`,
+    id: `${name}|${column.digest}|${column.key}|${over.rowsKey}`,
     label: `${name} of ${overText(column, over)}`,
     type: 'A',
     estimate: found.value,
@@ -110,11 +111,11 @@ export function statistic(
     dof: found.dof,
     note: found.note,
     sample: {
-      traceId: column.traceId,
+      digest: column.digest,
       statistic: name === 'mean' ? 'mean' : 'other',
       values: column.values,
       rows: over.rows,
-      group: `${column.traceId}|${over.rowsKey}`,
+      group: `${column.digest}|${over.rowsKey}`,
       count: gathered.values.length,
       blockLength: found.blockLength,
     },

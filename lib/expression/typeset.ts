@@ -168,13 +168,13 @@ export function plainText(node: Expression): string {
     case 'negative':
       return `−${inBrackets(node.of, 2)}`;
     case 'binary': {
+      const { operator, left, right } = node;
       const own = strength(node);
-      const sign = node.operator === '+' || node.operator === '-' ? ` ${node.operator} ` : node.operator;
-      return (
-        inBrackets(node.left, own) +
-        sign +
-        inBrackets(node.right, own + (node.operator === '+' || node.operator === '*' ? 0 : 1))
-      );
+      const sign = operator === '+' || operator === '-' ? ` ${operator} ` : operator;
+      // Powers are read from the right, − and / from the left.
+      const beside = operator === '^' ? 5 : own;
+      const behind = operator === '-' || operator === '/' ? own + 1 : own;
+      return inBrackets(left, beside) + sign + inBrackets(right, behind);
     }
     case 'call': {
       const given = node.of.map(plainText);
@@ -185,7 +185,7 @@ export function plainText(node: Expression): string {
 }
 
 /** `symbol = result` as MathML, unit upright behind a thin space. */
-export function resultMathml(symbol: string, shown: Shown): string {
+export function resultMathml(symbolMathml: string, shown: Shown): string {
   const { digits, unit } = shown;
   const sign = digits.negative ? '<mo form="prefix">−</mo>' : '';
   const number = `<mn>${grouped(digits.number, '\u2009')}${digits.last === null ? '' : `(${digits.last})`}</mn>`;
@@ -195,10 +195,10 @@ export function resultMathml(symbol: string, shown: Shown): string {
       : `<mo>×</mo><msup><mn>10</mn><mn>${String(digits.exponent).replace('-', '−')}</mn></msup>`;
   const withUnit =
     unit.text === '' ? '' : `<mspace width="0.167em"/><mi mathvariant="normal">${escaped(unit.text)}</mi>`;
-  return `<math><mrow>${symbolMathml(symbol)}<mo>=</mo>${sign}${number}${power}${withUnit}</mrow></math>`;
+  return `<math><mrow>${symbolMathml}<mo>=</mo>${sign}${number}${power}${withUnit}</mrow></math>`;
 }
 
 /** `symbol = words`, for a column. */
-export function wordsMathml(symbol: string, words: string): string {
-  return `<math><mrow>${symbolMathml(symbol)}<mo>=</mo><mtext>${escaped(words)}</mtext></mrow></math>`;
+export function wordsMathml(symbolMathml: string, words: string): string {
+  return `<math><mrow>${symbolMathml}<mo>=</mo><mtext>${escaped(words)}</mtext></mrow></math>`;
 }

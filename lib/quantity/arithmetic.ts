@@ -49,23 +49,41 @@ function addTerms(into: Terms, terms: ReadonlyMap<string, Term<Series>>, partial
   }
 }
 
+/** The chain rule; what passes unchanged is not copied. */
+function combined(a: Quantity, b: Quantity | null, { dx, dy }: Partials): ReadonlyMap<string, Term<Series>> {
+  if (b === null || b.terms.size === 0) {
+    if (dx === 1 || a.terms.size === 0) return a.terms;
+  } else if (a.terms.size === 0 && dy === 1) {
+    return b.terms;
+  }
+  const terms: Terms = new Map();
+  addTerms(terms, a.terms, dx);
+  if (b) addTerms(terms, b.terms, dy);
+  return terms;
+}
+
 export type Shape = { dimension: Dimension; scale: Unit['scale']; hint: Unit | null; label: string };
 
 /** Puts a result together; `label` names it for the reader where it is a column. */
 export function assemble(a: Quantity, b: Quantity | null, partials: Partials, shape: Shape): Quantity {
-  const terms: Terms = new Map();
-  addTerms(terms, a.terms, partials.dx);
-  if (b) addTerms(terms, b.terms, partials.dy);
+  const terms = combined(a, b, partials);
   const { dimension, scale, hint, label } = shape;
   const column = a.kind === 'column' ? a : b?.kind === 'column' ? b : null;
   if (!column) {
     if (typeof partials.z !== 'number') throw new Error('A scalar operation gave a column.');
-    return { kind: 'scalar', value: partials.z, dimension, scale, hint, terms: terms as Map<string, Term<number>> };
+    return {
+      kind: 'scalar',
+      value: partials.z,
+      dimension,
+      scale,
+      hint,
+      terms: terms as ReadonlyMap<string, Term<number>>,
+    };
   }
   const values = typeof partials.z === 'number' ? new Float64Array(column.values.length).fill(partials.z) : partials.z;
   for (let i = 0; i < values.length; i++) if (!Number.isFinite(values[i])) values[i] = NaN;
-  const { handle, traceId } = column;
-  return { kind: 'column', handle, traceId, key: label, label, values, dimension, scale, hint, terms };
+  const { handle, digest } = column;
+  return { kind: 'column', handle, digest, key: label, label, values, dimension, scale, hint, terms };
 }
 
 /** Two columns go together row by row only where they are of one trace. */
@@ -84,14 +102,16 @@ export function add(a: Quantity, b: Quantity, shape: Shape, sign: 1 | -1): Quant
 }
 
 export function multiply(a: Quantity, b: Quantity, shape: Omit<Shape, 'dimension' | 'scale'>): Quantity {
-  const [x, y] = [seriesOf(a), seriesOf(b)];
+  const x = seriesOf(a);
+  const y = seriesOf(b);
   const dimension = multiplyDimensions(a.dimension, b.dimension);
   return assemble(a, b, { z: each2(x, y, product), dx: y, dy: x }, { ...shape, dimension, scale: 'linear' });
 }
 
 /** b = 0 gives NaN rows in columns; of scalars the caller refuses it first. */
 export function divide(a: Quantity, b: Quantity, shape: Omit<Shape, 'dimension' | 'scale'>): Quantity {
-  const [x, y] = [seriesOf(a), seriesOf(b)];
+  const x = seriesOf(a);
+  const y = seriesOf(b);
   const z = each2(x, y, (p, q) => p / q);
   const dy = b.terms.size > 0 ? each2(z, y, (p, q) => -p / q) : 0;
   const dimension = multiplyDimensions(a.dimension, b.dimension, -1);
@@ -125,7 +145,8 @@ export function apply(
 
 /** a^b with both uncertain; pure numbers, a > 0. */
 export function power(a: Quantity, b: Quantity, label: string): Quantity {
-  const [x, y] = [seriesOf(a), seriesOf(b)];
+  const x = seriesOf(a);
+  const y = seriesOf(b);
   const z = each2(x, y, Math.pow);
   const dx = each2(
     each2(x, y, (p, q) => Math.pow(p, q - 1)),
@@ -143,7 +164,8 @@ export function negate<Q extends Quantity>(a: Q, label: string): Quantity {
 
 /** Row by row the smaller (sign −1) or larger (sign 1) of two. */
 export function extreme(a: Quantity, b: Quantity, sign: 1 | -1, shape: Shape): Quantity {
-  const [x, y] = [seriesOf(a), seriesOf(b)];
+  const x = seriesOf(a);
+  const y = seriesOf(b);
   const first = (p: number, q: number) => sign * (p - q) >= 0;
   const partials = {
     z: each2(x, y, (p, q) => (Number.isNaN(p) || Number.isNaN(q) ? NaN : first(p, q) ? p : q)),

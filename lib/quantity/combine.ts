@@ -26,23 +26,46 @@ type Contribution = { input: Input; amount: number; group: string };
  * freedom of its members; any other input is a group of its own.
  */
 export function combine(scalar: Scalar, correlations: Correlations): Combined {
-  const contributions: Contribution[] = [];
+  let sampled = 0;
+  for (const { input } of scalar.terms.values()) if (correlates(input) && input.u !== 0) sampled++;
+  return sampled > 1 ? combineCorrelated(scalar, correlations) : combineIndependent(scalar);
+}
+
+/** Without two inputs that may be correlated every one is a group of its own. */
+function combineIndependent(scalar: Scalar): Combined {
+  let variance = 0;
+  for (const { input, c } of scalar.terms.values()) variance += (c * input.u) ** 2;
+  if (variance === 0) return { u: 0, dof: null, k: coverageFactor(coverage, null), warnings: [] };
+  let below = 0;
+  for (const { input, c } of scalar.terms.values()) {
+    if (input.dof !== null) below += ((c * input.u) ** 2 / variance) ** 2 / input.dof;
+  }
+  const dof = below > 0 ? Math.max(1, 1 / below) : null;
+  return { u: Math.sqrt(variance), dof, k: coverageFactor(coverage, dof), warnings: [] };
+}
+
+/** Whether an input may be correlated with another: statistics of samples, and results of one fit. */
+const correlates = (input: Input): boolean =>
+  input.sample !== null || input.correlated !== undefined || input.group !== undefined;
+
+function combineCorrelated(scalar: Scalar, correlations: Correlations): Combined {
+  const sampled: Contribution[] = [];
+  const warnings: string[] = [];
+  let squares = 0;
   for (const { input, c } of scalar.terms.values()) {
     const amount = c * input.u;
-    if (amount !== 0) contributions.push({ input, amount, group: input.sample?.group ?? input.id });
+    squares += amount * amount;
+    if (amount !== 0 && correlates(input)) {
+      sampled.push({ input, amount, group: input.sample?.group ?? input.group ?? input.id });
+    }
   }
-  const sampled = contributions.filter(({ input }) => input.sample !== null);
-  const warnings: string[] = [];
-  let variance = 0;
-  let squares = 0;
-  for (const { amount } of contributions) squares += amount * amount;
-  variance = squares;
-  const varianceOf = new Map<string, { variance: number; dof: number | null }>();
-  for (const { input, amount, group } of contributions) {
-    const before = varianceOf.get(group);
+  const groups = new Map<string, { variance: number; dof: number | null }>();
+  for (const { input, amount, group } of sampled) {
+    const before = groups.get(group);
     const dof = before ? fewer(before.dof, input.dof) : input.dof;
-    varianceOf.set(group, { variance: (before?.variance ?? 0) + amount * amount, dof });
+    groups.set(group, { variance: (before?.variance ?? 0) + amount * amount, dof });
   }
+  let variance = squares;
   let acrossGroups: [Input, Input] | null = null;
   for (let i = 0; i < sampled.length; i++) {
     for (let j = i + 1; j < sampled.length; j++) {
@@ -56,12 +79,13 @@ export function combine(scalar: Scalar, correlations: Correlations): Combined {
       if (r === 0) continue;
       const covariance = 2 * r * a.amount * b.amount;
       variance += covariance;
-      const group = varianceOf.get(a.group);
+      const group = groups.get(a.group);
       if (a.group === b.group && group) group.variance += covariance;
       else if (Math.abs(r) > 1e-9) acrossGroups ??= [a.input, b.input];
     }
   }
-  if (variance < 0 || variance < 1e-14 * squares) variance = 0;
+  // What is left of contributions that cancel is rounding.
+  if (variance < 1e-14 * squares) variance = 0;
   const u = Math.sqrt(variance);
   if (u === 0) return { u: 0, dof: null, k: coverageFactor(coverage, null), warnings };
   if (acrossGroups) {
@@ -71,8 +95,11 @@ export function combine(scalar: Scalar, correlations: Correlations): Combined {
     return { u, dof: null, k: null, warnings };
   }
   let below = 0;
-  for (const { variance: part, dof } of varianceOf.values()) {
-    if (dof !== null && part > 0) below += ((part / variance) * (part / variance)) / dof;
+  for (const { variance: part, dof } of groups.values()) {
+    if (dof !== null && part > 0) below += (part / variance) ** 2 / dof;
+  }
+  for (const { input, c } of scalar.terms.values()) {
+    if (!correlates(input) && input.dof !== null) below += ((c * input.u) ** 2 / variance) ** 2 / input.dof;
   }
   const dof = below > 0 ? Math.max(1, 1 / below) : null;
   return { u, dof, k: coverageFactor(coverage, dof), warnings };

@@ -30,7 +30,9 @@ export class Correlations {
   private readonly known = new Map<string, { a: Sample; b: Sample; correlation: Correlation }>();
 
   between(x: Input, y: Input): Correlation {
-    if (x.sample === null || y.sample === null || x.sample.traceId !== y.sample.traceId) return none;
+    const stated = x.correlated?.get(y.id) ?? y.correlated?.get(x.id);
+    if (stated !== undefined) return { r: Math.max(-1, Math.min(1, stated)), known: true };
+    if (x.sample === null || y.sample === null || x.sample.digest !== y.sample.digest) return none;
     const [a, b] = x.id < y.id ? [x, y] : [y, x];
     const key = `${a.id}\n${b.id}`;
     const found = this.known.get(key);

@@ -7,7 +7,8 @@ export type RowRanges = readonly (readonly [number, number])[];
 
 /** What a statistic was taken from: kept so that two of them over common rows know their correlation. */
 export type Sample = {
-  traceId: string;
+  /** Of the file that the samples stand in. */
+  digest: string;
   statistic: 'mean' | 'other';
   /** One per row of the trace, NaN where missing. */
   values: Float64Array;
@@ -36,6 +37,10 @@ export type Input = {
   dof: number | null;
   note: string | null;
   sample: Sample | null;
+  /** Inputs of one group share degrees of freedom; results of one fit. Without it an input is a group of its own. */
+  group?: string;
+  /** Correlation coefficients with other inputs, by their ids, where they were stated. */
+  correlated?: ReadonlyMap<string, number>;
 };
 
 export function exactInput(id: string, label: string, estimate: number, unit: Unit, note: string | null): Input {

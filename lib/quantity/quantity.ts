@@ -19,9 +19,9 @@ export type Scalar = {
 
 export type Column = {
   kind: 'column';
-  /** Handle and id of the trace that the rows belong to. */
+  /** Handle of the trace that the rows belong to, and the digest of its file: the identity of its samples. */
   handle: string;
-  traceId: string;
+  digest: string;
   /** Equal keys are the same samples: the identity of what is averaged. */
   key: string;
   /** As a reader knows it: `t1.I`. */

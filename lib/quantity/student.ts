@@ -26,25 +26,24 @@ export function incompleteBeta(x: number, a: number, b: number): number {
   return x < (a + 1) / (a + b + 2) ? (front * fraction(x, a, b)) / a : 1 - (front * fraction(1 - x, b, a)) / b;
 }
 
+/** Keeps Lentz's method from dividing by zero. */
+function away(value: number): number {
+  return Math.abs(value) < 1e-300 ? 1e-300 : value;
+}
+
 function fraction(x: number, a: number, b: number): number {
-  const tiny = 1e-300;
   let c = 1;
-  let d = 1 - ((a + b) * x) / (a + 1);
-  if (Math.abs(d) < tiny) d = tiny;
-  d = 1 / d;
+  let d = 1 / away(1 - ((a + b) * x) / (a + 1));
   let result = d;
   for (let m = 1; m <= 500; m++) {
-    for (const term of [
-      (m * (b - m) * x) / ((a + 2 * m - 1) * (a + 2 * m)),
-      (-(a + m) * (a + b + m) * x) / ((a + 2 * m) * (a + 2 * m + 1)),
-    ]) {
-      d = 1 + term * d;
-      if (Math.abs(d) < tiny) d = tiny;
-      c = 1 + term / c;
-      if (Math.abs(c) < tiny) c = tiny;
-      d = 1 / d;
-      result *= d * c;
-    }
+    const even = (m * (b - m) * x) / ((a + 2 * m - 1) * (a + 2 * m));
+    d = 1 / away(1 + even * d);
+    c = away(1 + even / c);
+    result *= d * c;
+    const odd = (-(a + m) * (a + b + m) * x) / ((a + 2 * m) * (a + 2 * m + 1));
+    d = 1 / away(1 + odd * d);
+    c = away(1 + odd / c);
+    result *= d * c;
     if (Math.abs(d * c - 1) < 1e-16) break;
   }
   return result;
@@ -82,7 +81,8 @@ function solveStudent(probability: number, dof: number): number {
     const density = norm * Math.pow(1 + (t * t) / dof, -(dof + 1) / 2);
     const move = tail / (2 * density);
     t += move;
-    if (Math.abs(move) <= 1e-14 * t) break;
+    // The error after a step is of the order of its square.
+    if (Math.abs(move) <= 1e-9 * t) break;
   }
   return t;
 }
@@ -106,7 +106,7 @@ export function normalCoverageFactor(probability: number): number {
   for (let step = 0; step < 200; step++) {
     const move = (probability - centralProbability(z)) / ((2 * Math.exp((-z * z) / 2)) / Math.sqrt(2 * Math.PI));
     z += move;
-    if (Math.abs(move) <= 1e-14 * z) break;
+    if (Math.abs(move) <= 1e-9 * z) break;
   }
   known.set(key, z);
   return z;

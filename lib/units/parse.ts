@@ -109,7 +109,8 @@ class UnitReader {
   constructor(private readonly text: string) {}
 
   read(): UnitFactor[] {
-    if (this.text.trim() === '') throw new Refusal('unknown-unit', 'No unit is written here.');
+    if (this.text.trim() === '')
+      throw new Refusal('unknown-unit', 'No unit is written here; a pure number has the unit 1.');
     const factors = this.product(0);
     this.space();
     if (this.at < this.text.length) this.fail();

@@ -152,6 +152,18 @@ describe('attack 101: the expression engine', () => {
     }
   });
 
+  it('bounds the work with columns, and says so the same when lines are taken over', () => {
+    // Eight million rows each: three columns are 2.4e7 rows, four are more than an entry keeps.
+    const rows = traceOf('t2', [{ symbol: 'x', unit: '1', samples: new Float64Array(8_000_000).fill(1) }]);
+    const kept = Array.from({ length: 4 }, (_, i) => `t2.y_${i} = t2.x + ${i}`);
+    const sheet = evaluateSheet({ cells: cellsOf(kept), traces: [rows] });
+    expect(sheet.results.get('c2')?.state).toBe('ok');
+    expect(sheet.results.get('c3')?.error?.code).toBe('too-large');
+    const again = evaluateSheet({ cells: cellsOf(kept), traces: [rows] }, sheet);
+    expect(again.results.get('c2')).toBe(sheet.results.get('c2'));
+    expect(again.results.get('c3')?.error?.code).toBe('too-large');
+  });
+
   it('bounds the number of lines, and keeps long chains from overflowing the stack', () => {
     const chain = ['x_0 = 1', ...Array.from({ length: 4000 }, (_, i) => `x_${i + 1} = x_${i} + 1`)];
     const sheet = evaluateSheet({ cells: cellsOf(chain), traces: [] });

@@ -1,4 +1,5 @@
-import type { RawColumn, TraceSource } from '@/lib/expression/contract';
+import type { RawColumn, Sheet, TraceSource, ValueResult } from '@/lib/expression/contract';
+import { evaluateSheet } from '@/lib/expression/evaluate';
 import type { Span, StatedQuantity, TraceSettings } from '@/lib/document/attributes';
 
 export type GivenColumn = {
@@ -48,4 +49,15 @@ export function traceOf(
 /** Lines as cells `c0`, `c1` …, with the usual unit and digits. */
 export function cellsOf(sources: readonly string[]) {
   return sources.map((source, i) => ({ id: `c${i}`, source, unit: null, digits: null }));
+}
+
+/** Calculates lines; `of` gives a result by its symbol. */
+export function calculate(lines: readonly string[], traces: TraceSource[], previous?: Sheet) {
+  const sheet = evaluateSheet({ cells: cellsOf(lines), traces }, previous);
+  const of = (symbol: string): ValueResult => {
+    const found = [...sheet.results.values()].find((result) => result.symbol === symbol);
+    if (!found) throw new Error(`no ${symbol}`);
+    return found;
+  };
+  return { sheet, of };
 }
