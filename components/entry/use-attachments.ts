@@ -1,12 +1,13 @@
 'use client';
 
 import type { Editor } from '@tiptap/core';
-import { useCallback, useMemo, useRef, useState } from 'react';
+import { useCallback, useEffect, useMemo, useRef, useState } from 'react';
 import type { TraceDto } from '@/lib/schemas/entry';
 import type { EditorHost } from '@/components/editor/actions';
 import { insertPicture } from '@/components/editor/picture/extension';
 import { insertTrace } from '@/components/editor/trace/extension';
 import { request } from '@/components/hooks/request';
+import type { SendOptions, SendStage } from '@/components/trace/send-file';
 
 export type Attachment = {
   key: string;
@@ -14,16 +15,14 @@ export type Attachment = {
   name: string;
   done: number;
   of: number;
-  state: 'sending' | 'reading' | 'failed';
+  state: 'sending' | 'paused' | 'reading' | 'failed';
+  /** What the sending is at; pausing is possible while bytes travel. */
+  stage: SendStage;
   problem: string | null;
 };
 
 /** Sends one file; resolves with the id that the server gave it. */
-export type SendFile = (
-  kind: 'trace' | 'picture',
-  file: File,
-  options: { entryId: string; signal: AbortSignal; onProgress: (done: number, of: number) => void },
-) => Promise<string>;
+export type SendFile = (kind: 'trace' | 'picture', file: File, options: SendOptions) => Promise<string>;
 
 type Options = {
   entryId: string;
@@ -47,6 +46,7 @@ async function whenRead(traceId: string, signal: AbortSignal): Promise<TraceDto>
 export function useAttachments({ entryId, editor, send, onTrace }: Options) {
   const [attachments, setAttachments] = useState<Attachment[]>([]);
   const stops = useRef(new Map<string, AbortController>());
+  const controls = useRef(new Map<string, { pause: () => void; resume: () => void }>());
   const retries = useRef(new Map<string, () => void>());
   const inputs = useRef<{ trace: HTMLInputElement | null; picture: HTMLInputElement | null }>({
     trace: null,
@@ -66,15 +66,16 @@ export function useAttachments({ entryId, editor, send, onTrace }: Options) {
       const key = crypto.randomUUID();
       setAttachments((all) => [
         ...all,
-        { key, kind, name: file.name, done: 0, of: file.size, state: 'sending', problem: null },
+        { key, kind, name: file.name, done: 0, of: file.size, state: 'sending', stage: 'reading', problem: null },
       ]);
       const go = async () => {
         const stop = new AbortController();
         stops.current.set(key, stop);
         change(key, { state: 'sending', problem: null, done: 0 });
         try {
-          const onProgress = (done: number, of: number) => change(key, { done, of });
-          const id = await send(kind, file, { entryId, signal: stop.signal, onProgress });
+          const onProgress = (done: number, of: number, stage: SendStage) => change(key, { done, of, stage });
+          const onControl: SendOptions['onControl'] = (control) => controls.current.set(key, control);
+          const id = await send(kind, file, { entryId, signal: stop.signal, onProgress, onControl });
           const target = editor();
           if (kind === 'picture') {
             if (target) insertPicture(target, id);
@@ -115,5 +116,26 @@ export function useAttachments({ entryId, editor, send, onTrace }: Options) {
     [change],
   );
   const retry = useCallback((key: string) => retries.current.get(key)?.(), []);
-  return { attachments, host, inputs, cancel, retry };
+  const pause = useCallback(
+    (key: string) => {
+      controls.current.get(key)?.pause();
+      change(key, { state: 'paused' });
+    },
+    [change],
+  );
+  const resume = useCallback(
+    (key: string) => {
+      change(key, { state: 'sending' });
+      controls.current.get(key)?.resume();
+    },
+    [change],
+  );
+  const unfinished = attachments.length > 0;
+  useEffect(() => {
+    if (!unfinished) return;
+    const ask = (event: BeforeUnloadEvent) => event.preventDefault();
+    window.addEventListener('beforeunload', ask);
+    return () => window.removeEventListener('beforeunload', ask);
+  }, [unfinished]);
+  return { attachments, host, inputs, cancel, retry, pause, resume };
 }

@@ -11,6 +11,7 @@ import { writingExtensions } from '@/components/editor/editor-extensions';
 import { SheetProvider, type Focus } from '@/components/editor/sheet-context/context';
 import { Toolbar } from '@/components/editor/toolbar';
 import { useDraft } from '@/components/hooks/use-draft';
+import { sendFile } from '@/components/trace/send-file';
 import { AttachmentList } from './attachment-list';
 import { Compare } from './compare';
 import { GutterNote } from './gutter-note';
@@ -18,7 +19,6 @@ import { ProvenanceColumn } from './provenance/column';
 import { Questions } from './questions';
 import { RenewDialog } from './renew-dialog';
 import { SaveLine } from './save-line';
-import { sendFile } from './send-file';
 import { SheetHead } from './sheet-head';
 import { useAttachments } from './use-attachments';
 import { replaceText, useEntryEditor } from './use-entry-editor';
@@ -51,7 +51,7 @@ export function WritingSheet({ entry, draft: first, person, build }: Props) {
     },
   });
   const onTrace = useCallback((trace: TraceDto) => setTraces((all) => new Map(all).set(trace.id, trace)), []);
-  const { attachments, host, inputs, cancel, retry } = useAttachments({
+  const { attachments, host, inputs, cancel, retry, pause, resume } = useAttachments({
     entryId: entry.id,
     editor: () => held.current,
     send: sendFile,
@@ -165,7 +165,7 @@ export function WritingSheet({ entry, draft: first, person, build }: Props) {
           {editor ? <Toolbar editor={editor} host={host} /> : null}
           {traceInput('trace', '')}
           {traceInput('picture', 'image/png,image/jpeg,image/gif,image/webp')}
-          <AttachmentList attachments={attachments} onCancel={cancel} onRetry={retry} />
+          <AttachmentList attachments={attachments} onCancel={cancel} onRetry={retry} onPause={pause} onResume={resume} />
           {comparing && status.kind === 'conflict' ? (
             <Compare
               mine={draft.text()}

@@ -4,9 +4,9 @@ import { parseUnit } from '@/lib/units/parse';
 /** What a trace's settings are before its author has said anything: names, symbols and units from the file, nothing guessed. */
 export function firstSettings(columns: { name: string; symbol: string; unit: string | null }[]): TraceSettings {
   return {
-    columns: columns.map(({ name, symbol, unit }) => ({
+    columns: columns.slice(0, 256).map(({ name, symbol, unit }, i) => ({
       name: name.slice(0, 300),
-      symbol,
+      symbol: symbolSchema.safeParse(symbol).success ? symbol : `c${i + 1}`,
       unit: unit === null ? null : unit.slice(0, 60),
       gain: null,
       offset: null,

@@ -35,44 +35,24 @@ export class Refused extends Error {}
 /** The connection broke; what arrived is kept, and sending again goes on from there. */
 export class Interrupted extends Error {}
 
-export type Sending = {
-  pause: () => void;
-  resume: () => void;
-  /** The id of the received file. Rejects with Refused, Interrupted, or AbortError while the digest is computed. */
-  traceId: Promise<string>;
+export type SendOptions = {
+  entryId: string;
+  /** Ends it; what has arrived is kept by the server and used when the file is sent again. */
+  signal: AbortSignal;
+  onProgress: (done: number, of: number, stage: SendStage) => void;
+  /** Gets the means to pause and go on, as soon as bytes are under way. */
+  onControl?: (control: { pause: () => void; resume: () => void }) => void;
 };
 
 const refusals = new Set(['FORBIDDEN', 'NOT_FOUND', 'BAD_REQUEST', 'TOO_LARGE', 'TOO_SMALL']);
 
-/** @returns at once; `signal` ends the reading of the file, `pause` the sending. */
-export function sendFile(options: {
-  entryId: string;
-  kind: Kind;
-  file: File;
-  onProgress: (stage: SendStage, bytes: number) => void;
-  signal: AbortSignal;
-}): Sending {
-  let running: Running | null = null;
-  return {
-    pause: () => {
-      try {
-        running?.pauseUpload();
-      } catch (error) {
-        // The library throws where it is paused already; that is what was asked for.
-        if (!(error instanceof UploadAbortedError)) throw error;
-      }
-    },
-    resume: () => running?.resumeUpload(),
-    traceId: send(options, (started) => {
-      running = started;
-    }),
-  };
-}
-
-async function send(
-  { entryId, kind, file, onProgress, signal }: Parameters<typeof sendFile>[0],
-  onRunning: (running: Running) => void,
-): Promise<string> {
+/**
+ * Sends one file; resolves with the id of what was received.
+ * @throws Refused, Interrupted; AbortError where `signal` ended it
+ */
+export async function sendFile(kind: Kind, file: File, options: SendOptions): Promise<string> {
+  const { entryId, signal, onControl } = options;
+  const onProgress = (stage: SendStage, done: number) => options.onProgress(done, file.size, stage);
   const limit = kind === 'trace' ? maxTraceBytes : maxPictureBytes;
   if (file.size === 0) throw new Refused(`${file.name} is empty: it has no bytes. Nothing was sent.`);
   if (file.size > limit) {
@@ -97,13 +77,16 @@ async function send(
         onUploadProgress: ({ loaded }) =>
           onProgress(loaded >= file.size ? 'recording' : 'sending', Math.min(loaded, file.size)),
       });
-      onRunning(running);
-      const done = await running.done();
+      const pause = () => pauseQuietly(running);
+      onControl?.({ pause, resume: () => running.resumeUpload() });
+      signal.throwIfAborted();
+      const done = await Promise.race([running.done(), ended(signal, pause)]);
       const { serverData } = Array.isArray(done) ? done[0] : done;
       if (serverData && typeof serverData === 'object' && ('traceId' in serverData || 'error' in serverData)) {
         return serverData as UploadOutcome;
       }
     } catch (error) {
+      if (signal.aborted) throw error;
       // The answer may have been lost on the way while the file has arrived.
       const known = await arrived(entryId, uploadId);
       if (known) return known;
@@ -113,6 +96,25 @@ async function send(
     if (known) return known;
     throw new Interrupted('The file was sent, but the server has not answered. It is kept; try again to go on.');
   }
+}
+
+function pauseQuietly(running: Running): void {
+  try {
+    running.pauseUpload();
+  } catch (error) {
+    // The library throws where it is paused already; that is what was asked for.
+    if (!(error instanceof UploadAbortedError)) throw error;
+  }
+}
+
+/** Rejects when `signal` ends the upload, after the bytes have been stopped. */
+function ended(signal: AbortSignal, stop: () => void): Promise<never> {
+  return new Promise((_, reject) => {
+    signal.addEventListener('abort', () => {
+      stop();
+      reject(signal.reason);
+    });
+  });
 }
 
 async function arrived(entryId: string, uploadId: string): Promise<UploadOutcome | null> {

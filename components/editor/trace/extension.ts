@@ -1,43 +1,24 @@
 import type { Editor } from '@tiptap/core';
 import { ReactNodeViewRenderer } from '@tiptap/react';
-import { symbolSchema, type TraceNodeAttributes } from '@/lib/document/attributes';
+import type { TraceNodeAttributes } from '@/lib/document/attributes';
 import { newBlockId } from '@/lib/document/block-id';
 import { freeHandle } from '@/lib/document/nodes/identity';
 import { trace } from '@/lib/document/nodes/trace';
 import type { TraceDto } from '@/lib/schemas/entry';
+import { firstView } from '@/components/plot/trace-plot';
+import { firstSettings } from '@/components/trace/first-settings';
 import { TraceView } from './view';
 
 /** What a trace node says before its author has said anything: the columns as found in the file, units as stated there. */
 export function attributesForTrace(file: TraceDto, handle: string): TraceNodeAttributes {
-  const columns = file.columns.slice(0, 256).map((column, index) => ({
-    name: column.name.slice(0, 300),
-    symbol: symbolSchema.safeParse(column.symbol).success ? column.symbol : `c${index + 1}`,
-    unit: column.unit,
-    gain: null,
-    offset: null,
-  }));
-  const nothing = { frequency: null, waveform: null, amplitude: null, load: null, wait: null, eject: null };
+  const settings = firstSettings(file.columns);
   return {
     id: newBlockId(),
     traceId: file.id,
     handle,
-    settings: {
-      columns,
-      scanKind: null,
-      sign: null,
-      signConvention: null,
-      drive: nothing,
-      instrument: { name: null, range: null, bandwidth: null, integrationTime: null, overload: null },
-      sweepDirection: null,
-    },
+    settings,
     spans: [],
-    view: {
-      x: columns[0]?.symbol ?? null,
-      y: columns.slice(1, 2).map((column) => column.symbol),
-      logX: false,
-      logY: false,
-      range: null,
-    },
+    view: firstView(settings.columns),
   };
 }
 

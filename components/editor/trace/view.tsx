@@ -3,12 +3,16 @@
 import { NodeViewWrapper, type ReactNodeViewProps } from '@tiptap/react';
 import type { TraceNodeAttributes } from '@/lib/document/attributes';
 import { useSheet, useTrace } from '@/components/editor/sheet-context/context';
+import { useDerived } from '@/components/editor/sheet-context/use-derived';
+import { TracePanel } from '@/components/trace/trace-panel';
 
 /** A trace in the text: its plot, and below it handle, file, size and digest. */
-export function TraceView({ node, selected }: ReactNodeViewProps) {
+export function TraceView({ node, editor, selected, updateAttributes }: ReactNodeViewProps) {
   const attributes = node.attrs as TraceNodeAttributes;
   const file = useTrace(attributes.traceId);
-  const { setFocus, focus } = useSheet();
+  const { setFocus, focus, mode, store } = useSheet();
+  const derived = useDerived(store, attributes.handle);
+  const writable = mode === 'write' && editor.isEditable;
   const choose = () => setFocus({ kind: 'trace', id: attributes.id, blockId: attributes.id, quote: attributes.handle });
   return (
     <NodeViewWrapper
@@ -20,6 +24,14 @@ export function TraceView({ node, selected }: ReactNodeViewProps) {
       onFocusCapture={choose}
     >
       {file?.state === 'unreadable' ? <p className="text-error">{file.problem}</p> : null}
+      {file?.state === 'parsed' ? (
+        <TracePanel
+          attributes={attributes}
+          file={file}
+          derived={derived}
+          onAttributes={writable ? (part) => updateAttributes(part) : undefined}
+        />
+      ) : null}
       <p className="trace-foot">
         <strong className="figures">{attributes.handle}</strong>
         {file ? (

@@ -1,0 +1,135 @@
+'use client';
+
+import { useEffect, useMemo, useRef, useState } from 'react';
+import { withDerived, type DerivedValues } from '@/components/plot/derived-provider';
+import { serverProvider } from '@/components/plot/provider';
+import { TracePlot } from '@/components/plot/trace-plot';
+import { Facts } from '@/components/ui/facts';
+import type { TraceNodeAttributes, TraceSettings } from '@/lib/document/attributes';
+import type { TraceDto } from '@/lib/schemas/entry';
+import { settingsProblems } from './first-settings';
+import { driveLabels, instrumentLabels, scanNames } from './scan-kinds';
+import { TraceSettingsForm } from './trace-settings-form';
+
+type Attributes = Pick<TraceNodeAttributes, 'traceId' | 'handle' | 'settings' | 'spans' | 'view'>;
+
+type Props = {
+  attributes: Attributes;
+  file: TraceDto;
+  derived: DerivedValues[];
+  /** Left out where the trace is only read. */
+  onAttributes?: (part: Partial<Pick<Attributes, 'settings' | 'spans' | 'view'>>) => void;
+};
+
+/** Zooming changes the view many times a second; the document gets the last one. */
+const restMs = 700;
+
+/** A received trace: its plot with named spans, and what its author says of it. */
+export function TracePanel({ attributes, file, derived, onAttributes }: Props) {
+  const { traceId, handle, settings, spans } = attributes;
+  const [view, setView] = useState(attributes.view);
+  const write = useRef(onAttributes);
+  useEffect(() => {
+    write.current = onAttributes;
+  });
+  const stored = JSON.stringify(attributes.view);
+  const own = useRef(stored);
+  useEffect(() => {
+    // Changed from outside: another window's text was taken over.
+    if (own.current !== stored) setView(JSON.parse(stored) as Attributes['view']);
+    own.current = stored;
+  }, [stored]);
+  useEffect(() => {
+    const text = JSON.stringify(view);
+    if (text === own.current) return;
+    const timer = setTimeout(() => {
+      own.current = text;
+      write.current?.({ view });
+    }, restMs);
+    return () => clearTimeout(timer);
+  }, [view]);
+
+  const { rows, columns: facts } = file;
+  const provider = useMemo(() => {
+    const columns = settings.columns.map(({ symbol, unit }, i) => ({
+      symbol,
+      unit,
+      min: facts[i]?.min ?? null,
+      max: facts[i]?.max ?? null,
+    }));
+    return withDerived(serverProvider(traceId, rows, columns), derived);
+  }, [traceId, rows, facts, settings.columns, derived]);
+
+  const problems = settingsProblems(settings);
+  const open = Object.keys(problems).length;
+  const change = (next: TraceSettings) => {
+    const rename = renaming(settings, next);
+    const renamed = { ...view, x: view.x && rename(view.x), y: view.y.map(rename) };
+    setView(renamed);
+    own.current = JSON.stringify(renamed);
+    onAttributes?.({
+      settings: next,
+      view: renamed,
+      spans: spans.map((span) => ({ ...span, axis: rename(span.axis) })),
+    });
+  };
+  return (
+    <>
+      <TracePlot
+        title={`${handle}, ${file.fileName}`}
+        fileName={file.fileName}
+        provider={provider}
+        view={view}
+        onView={setView}
+        spans={spans}
+        onSpans={onAttributes && ((next) => onAttributes({ spans: next }))}
+      />
+      <details className="my-2" open={(open > 0 && onAttributes !== undefined) || undefined}>
+        <summary className="min-h-6 cursor-pointer text-action">
+          Units, gains and scan of {handle}
+          {open > 0 ? (
+            <span className="text-error">
+              : {open} {open === 1 ? 'thing' : 'things'} to state
+            </span>
+          ) : null}
+        </summary>
+        {onAttributes ? (
+          <TraceSettingsForm settings={settings} onChange={change} problems={problems} />
+        ) : (
+          <Facts facts={stated(settings)} />
+        )}
+      </details>
+    </>
+  );
+}
+
+/** Follows a column whose symbol was changed. */
+function renaming(before: TraceSettings, after: TraceSettings): (symbol: string) => string {
+  return (symbol) => {
+    const index = before.columns.findIndex((column) => column.symbol === symbol);
+    return index < 0 ? symbol : (after.columns[index]?.symbol ?? symbol);
+  };
+}
+
+function stated(settings: TraceSettings): [string, string | null][] {
+  const of = (quantity: { text: string; source: string } | null, name: string) =>
+    quantity ? `, ${name} ${quantity.text}${quantity.source ? ` (${quantity.source})` : ''}` : '';
+  return [
+    ...settings.columns.map(({ symbol, name, unit, gain, offset }): [string, string] => [
+      symbol,
+      `${name}, ${unit === null ? 'unit not stated' : unit === '1' ? 'a plain number' : unit}${of(gain, 'gain')}${of(offset, 'offset')}`,
+    ]),
+    ['Measured', settings.scanKind && scanNames[settings.scanKind]],
+    ['Sign of the current', settings.sign],
+    ['A positive current means', settings.signConvention],
+    ['Sweep direction', settings.sweepDirection],
+    ...Object.entries(driveLabels).map(([field, { label }]): [string, string | null] => [
+      label,
+      settings.drive[field as keyof typeof driveLabels],
+    ]),
+    ...Object.entries(instrumentLabels).map(([field, { label }]): [string, string | null] => [
+      label,
+      settings.instrument[field as keyof typeof instrumentLabels],
+    ]),
+  ];
+}
