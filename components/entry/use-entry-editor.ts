@@ -85,6 +85,7 @@ export function useEntryEditor({ extensions, doc, editable, store, label, onChan
     content: doc,
     editable,
     immediatelyRender: false,
+    injectCSS: false,
     shouldRerenderOnTransaction: false,
     editorProps: {
       attributes: {
