@@ -5,13 +5,12 @@ import { createContext, useCallback, useContext, useEffect, useMemo, useState, t
 /** Something one can do here; shown in the command menu above what can be opened. */
 export type Command = { key: string; title: string; detail: string; keys?: string; run: () => void };
 
-type CommandContextValue = {
-  commands: Command[];
-  /** Registers a page's or component's own commands; gives what takes them away again. */
-  offer: (commands: Command[]) => () => void;
-};
+/** Registers a page's or component's own commands; gives what takes them away again. */
+type Offer = (commands: Command[]) => () => void;
 
-const CommandContext = createContext<CommandContextValue | null>(null);
+// Two contexts: whoever offers commands must not be drawn again because commands were offered.
+const OfferContext = createContext<Offer | null>(null);
+const CommandsContext = createContext<Command[]>([]);
 
 /** Holds the commands of whatever is on the page. Stands once, in the layout, around page and menu. */
 export function CommandProvider({ children }: { children: ReactNode }) {
@@ -20,17 +19,21 @@ export function CommandProvider({ children }: { children: ReactNode }) {
     setOffers((all) => [...all, commands]);
     return () => setOffers((all) => all.filter((other) => other !== commands));
   }, []);
-  const value = useMemo(() => ({ commands: offers.flat(), offer }), [offers, offer]);
-  return <CommandContext.Provider value={value}>{children}</CommandContext.Provider>;
+  const commands = useMemo(() => offers.flat(), [offers]);
+  return (
+    <OfferContext.Provider value={offer}>
+      <CommandsContext.Provider value={commands}>{children}</CommandsContext.Provider>
+    </OfferContext.Provider>
+  );
 }
 
 /** The commands on offer; none outside a provider. */
 export function useCommands(): Command[] {
-  return useContext(CommandContext)?.commands ?? [];
+  return useContext(CommandsContext);
 }
 
 /** Offers a page's commands while it is shown. `commands` has to be memoised. */
 export function usePageCommands(commands: Command[]): void {
-  const offer = useContext(CommandContext)?.offer;
+  const offer = useContext(OfferContext);
   useEffect(() => offer?.(commands), [offer, commands]);
 }

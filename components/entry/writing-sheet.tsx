@@ -52,9 +52,10 @@ export function WritingSheet({ entry, draft: first, person, build }: Props) {
     },
   });
   const onTrace = useCallback((trace: TraceDto) => setTraces((all) => new Map(all).set(trace.id, trace)), []);
+  const editorNow = useCallback(() => held.current, []);
   const { attachments, host, inputs, cancel, retry, pause, resume } = useAttachments({
     entryId: entry.id,
-    editor: () => held.current,
+    editor: editorNow,
     send: sendFile,
     onTrace,
   });

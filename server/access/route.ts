@@ -40,7 +40,10 @@ export function withAccess<A extends Action, B = undefined, Q = undefined>(
   const answer = async (request: Request, context: RouteContext): Promise<Response> => {
     refuseCrossSite(request);
     const params = Object.fromEntries(
-      Object.entries((await context.params) ?? {}).map(([key, value]) => [key, Array.isArray(value) ? value.join('/') : value]),
+      Object.entries((await context.params) ?? {}).map(([key, value]) => [
+        key,
+        Array.isArray(value) ? value.join('/') : value,
+      ]),
     );
     const person = await findPerson(request.headers);
     const scope = await authorise(spec.action, person, params[spec.param ?? 'id'] ?? params.code ?? null);
