@@ -165,7 +165,7 @@ function waitingScans(
           traceBlock(trace(fileOf(scan.exitMv)), {
             handle,
             x: 't_wait',
-            y: [`${handle}.P`],
+            y: ['P'],
             spans: [{ name: 'late', axis: 't_wait', intervals: [[3.5, 4.4]] }],
             settings: {
               scanKind: 'waiting-time',
