@@ -1,6 +1,6 @@
 import { describe, expect, it } from 'vitest';
-import { noise } from '@/tests/reference/noise';
-import { calculate, cellsOf, traceOf, type GivenColumn } from '@/tests/reference/trace-source';
+import { noise } from '@/lib/quantity/example-noise';
+import { calculate, cellsOf, traceOf, type GivenColumn } from './example-trace';
 import type { RawColumn, TraceSource } from './contract';
 import { evaluateSheet } from './evaluate';
 import { readColumn } from './read-column';

@@ -97,7 +97,7 @@ export function fileColumn(
   const unit = columnUnit(settings.unit, name);
   const raw = rawSamples(trace, index, name);
   const values = new Float64Array(raw.length);
-  for (let row = 0; row < raw.length; row++) values[row] = toSi(raw[row] as number, unit);
+  for (let row = 0; row < raw.length; row++) values[row] = toSi(raw[row], unit);
   const { handle, digest } = trace;
   let column: Column = {
     kind: 'column',
@@ -177,7 +177,7 @@ export function spanRows(
   const ranges: [number, number][] = [];
   let start = -1;
   for (let row = 0; row <= axis.length; row++) {
-    const x = row < axis.length ? (axis[row] as number) : NaN;
+    const x = row < axis.length ? axis[row] : NaN;
     const inside = intervals.some(([a, b]) => x >= Math.min(a, b) && x <= Math.max(a, b));
     if (inside && start < 0) start = row;
     if (!inside && start >= 0) {
