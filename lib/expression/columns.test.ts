@@ -1,6 +1,8 @@
+import fc from 'fast-check';
 import { describe, expect, it } from 'vitest';
-import { noise } from '@/tests/reference/noise';
-import { calculate, cellsOf, traceOf, type GivenColumn } from '@/tests/reference/trace-source';
+import { noise } from '@/lib/quantity/example-noise';
+import { calculate, cellsOf, traceOf, type GivenColumn } from './example-trace';
+import { spanRows } from './columns';
 import type { RawColumn, TraceSource } from './contract';
 import { evaluateSheet } from './evaluate';
 import { readColumn } from './read-column';
@@ -234,6 +236,23 @@ describe('spans', () => {
     expect(of('a').value).toBe(1);
     expect(of('z').error?.message).toBe('t1 has no span `of`. Its spans: on.');
     expect(of('o').error?.message).toContain('span of t1');
+  });
+});
+
+describe('rows of many intervals', () => {
+  it('are those of which each lies in one, whatever their order', () => {
+    const interval = fc.tuple(fc.integer({ min: 0, max: 60 }), fc.integer({ min: 0, max: 60 }));
+    const axis = fc.array(fc.oneof(fc.integer({ min: 0, max: 60 }), fc.constant(NaN)), { minLength: 1, maxLength: 80 });
+    fc.assert(
+      fc.property(axis, fc.array(interval, { minLength: 1, maxLength: 8 }), (samples, intervals) => {
+        const rows = spanRows(traceOf('t1', [{ symbol: 't', unit: 's', samples }]), 0, intervals);
+        const found = rows.flatMap(([start, end]) => Array.from({ length: end - start }, (_, i) => start + i));
+        const wanted = samples.flatMap((x, row) =>
+          intervals.some(([a, b]) => x >= Math.min(a, b) && x <= Math.max(a, b)) ? [row] : [],
+        );
+        expect(found).toEqual(wanted);
+      }),
+    );
   });
 });
 

@@ -97,7 +97,7 @@ export function fileColumn(
   const unit = columnUnit(settings.unit, name);
   const raw = rawSamples(trace, index, name);
   const values = new Float64Array(raw.length);
-  for (let row = 0; row < raw.length; row++) values[row] = toSi(raw[row] as number, unit);
+  for (let row = 0; row < raw.length; row++) values[row] = toSi(raw[row], unit);
   const { handle, digest } = trace;
   let column: Column = {
     kind: 'column',
@@ -174,11 +174,20 @@ export function spanRows(
   intervals: readonly (readonly [number, number])[],
 ): RowRanges {
   const axis = rawSamples(trace, index, `${trace.handle}.${trace.settings.columns[index]?.symbol ?? ''}`);
+  const merged = mergeIntervals(intervals);
+  if (merged.length === 0) return [];
   const ranges: [number, number][] = [];
   let start = -1;
+  // Samples mostly follow one another along the axis: the interval met last is tried first.
+  let last = 0;
   for (let row = 0; row <= axis.length; row++) {
-    const x = row < axis.length ? (axis[row] as number) : NaN;
-    const inside = intervals.some(([a, b]) => x >= Math.min(a, b) && x <= Math.max(a, b));
+    const x = row < axis.length ? axis[row] : NaN;
+    let inside = x >= merged[last][0] && x <= merged[last][1];
+    if (!inside && !Number.isNaN(x)) {
+      const found = intervalBefore(merged, x);
+      inside = found >= 0 && x <= merged[found][1];
+      if (inside) last = found;
+    }
     if (inside && start < 0) start = row;
     if (!inside && start >= 0) {
       ranges.push([start, row]);
@@ -186,4 +195,30 @@ export function spanRows(
     }
   }
   return ranges;
+}
+
+/** The same set of numbers as ascending intervals that do not touch. */
+function mergeIntervals(intervals: readonly (readonly [number, number])[]): [number, number][] {
+  const sorted = intervals
+    .map(([a, b]): [number, number] => [Math.min(a, b), Math.max(a, b)])
+    .sort((p, q) => p[0] - q[0]);
+  const merged: [number, number][] = [];
+  for (const [from, to] of sorted) {
+    const before = merged.at(-1);
+    if (before && from <= before[1]) before[1] = Math.max(before[1], to);
+    else merged.push([from, to]);
+  }
+  return merged;
+}
+
+/** Index of the last interval that begins at or below x, or −1. */
+function intervalBefore(merged: readonly (readonly [number, number])[], x: number): number {
+  let low = 0;
+  let high = merged.length;
+  while (low < high) {
+    const middle = (low + high) >> 1;
+    if (merged[middle][0] <= x) low = middle + 1;
+    else high = middle;
+  }
+  return low - 1;
 }

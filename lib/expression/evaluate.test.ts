@@ -1,6 +1,6 @@
 import fc from 'fast-check';
 import { describe, expect, it } from 'vitest';
-import { cellsOf } from '@/tests/reference/trace-source';
+import { cellsOf } from './example-trace';
 import type { ValueResult } from './contract';
 import { engineVersion } from './engine';
 import { evaluateSheet } from './evaluate';
@@ -75,7 +75,7 @@ describe('values', () => {
     const cells = [{ id: 'y', source: 'y = 29.66(12) fA', unit: 'aA', digits: 1 }];
     const result = evaluateSheet({ cells, traces: [] }).results.get('y');
     expect(result).toMatchObject({ unit: 'aA', text: `2.97(1)×10⁴${thin}aA` });
-    expect(evaluateSheet({ cells: [{ ...cells[0]!, unit: 'V' }], traces: [] }).results.get('y')?.error?.code).toBe(
+    expect(evaluateSheet({ cells: [{ ...cells[0], unit: 'V' }], traces: [] }).results.get('y')?.error?.code).toBe(
       'unit-clash',
     );
   });

@@ -183,8 +183,8 @@ class Evaluation {
   }
 
   private outcome(number: number, refusal: Refusal | null): Outcome {
-    const cell = this.input.cells[number] as CellSource;
-    const { line, refusal: unread } = this.lines[number] as Parsed;
+    const cell = this.input.cells[number];
+    const { line, refusal: unread } = this.lines[number];
     const stop = refusal ?? unread;
     const before = this.memory?.outcomes.get(cell.id);
     if (stop || !line) {

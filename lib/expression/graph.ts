@@ -32,13 +32,13 @@ export function order(dependencies: readonly (readonly number[])[]): { sequence:
           enter(to);
           path.push({ node: to, edge: 0 });
         } else if (onStack[to]) {
-          low[node] = Math.min(low[node] as number, index[to] as number);
+          low[node] = Math.min(low[node], index[to]);
         }
         continue;
       }
       path.pop();
       const parent = path.at(-1);
-      if (parent) low[parent.node] = Math.min(low[parent.node] as number, low[node] as number);
+      if (parent) low[parent.node] = Math.min(low[parent.node], low[node]);
       if (low[node] !== index[node]) continue;
       const members: number[] = [];
       for (;;) {

@@ -7,9 +7,9 @@ import { gather, shared, statistic, type Gathered, type Over } from './statistic
 /** Rows where both columns have a sample. */
 function pairs(y: Column, x: Column, over: Over): { rows: Gathered; ys: Float64Array; xs: Float64Array } {
   const both = new Float64Array(y.values.length);
-  for (let i = 0; i < both.length; i++) both[i] = (y.values[i] as number) + 0 * (x.values[i] as number);
+  for (let i = 0; i < both.length; i++) both[i] = y.values[i] + 0 * x.values[i];
   const rows = gather(both, over, y.label);
-  const take = (series: Float64Array) => Float64Array.from(rows.rows, (row) => series[row] as number);
+  const take = (series: Float64Array) => Float64Array.from(rows.rows, (row) => series[row]);
   return { rows, ys: take(y.values), xs: take(x.values) };
 }
 
@@ -30,16 +30,16 @@ export function slopeOf(y: Column, x: Column, over: Over): Scalar {
   let sxx = 0;
   let sxy = 0;
   for (let i = 0; i < n; i++) {
-    const d = (xs[i] as number) - mx;
+    const d = xs[i] - mx;
     sxx += d * d;
-    sxy += d * ((ys[i] as number) - my);
+    sxy += d * (ys[i] - my);
   }
   if (sxx === 0) throw new Refusal('no-data', `slope of ${y.label}: ${x.label} has the same value in all rows.`);
   const b = sxy / sxx;
   const residuals = new Float64Array(n);
   let squares = 0;
   for (let i = 0; i < n; i++) {
-    const r = (ys[i] as number) - my - b * ((xs[i] as number) - mx);
+    const r = ys[i] - my - b * (xs[i] - mx);
     residuals[i] = r;
     squares += r * r;
   }
@@ -49,17 +49,17 @@ export function slopeOf(y: Column, x: Column, over: Over): Scalar {
   const dof = wider > 1 ? Math.max(1, blocked.dof - 1) : n - 2;
   const along = (weight: (i: number) => number) => (c: Float64Array) => {
     let total = 0;
-    for (let i = 0; i < n; i++) total += weight(i) * (c[rows.rows[i] as number] as number);
+    for (let i = 0; i < n; i++) total += weight(i) * c[rows.rows[i]];
     return total / sxx;
   };
   const ofY = shared(
     y,
-    along((i) => (xs[i] as number) - mx),
+    along((i) => xs[i] - mx),
     0,
   );
   const ofX = shared(
     x,
-    along((i) => (residuals[i] as number) - b * ((xs[i] as number) - mx)),
+    along((i) => residuals[i] - b * (xs[i] - mx)),
     0,
   );
   const note = `${y.label} against ${x.label}${over.name ? ` over ${over.name}` : ''}: ${n} samples${wider > 1 ? ', residuals correlated' : ''}`;
@@ -82,35 +82,31 @@ export function integralOf(y: Column, x: Column, over: Over): Scalar {
   if (n < 3) throw new Refusal('no-data', `integral of ${y.label} needs at least three samples.`);
   const weights = new Float64Array(n);
   for (let i = 1; i < n; i++) {
-    const half = ((xs[i] as number) - (xs[i - 1] as number)) / 2;
-    weights[i - 1] = (weights[i - 1] as number) + half;
-    weights[i] = (weights[i] as number) + half;
+    const half = (xs[i] - xs[i - 1]) / 2;
+    weights[i - 1] = weights[i - 1] + half;
+    weights[i] = weights[i] + half;
   }
   let value = 0;
   let weightSquares = 0;
   for (let i = 0; i < n; i++) {
-    value += (weights[i] as number) * (ys[i] as number);
-    weightSquares += (weights[i] as number) * (weights[i] as number);
+    value += weights[i] * ys[i];
+    weightSquares += weights[i] * weights[i];
   }
   let differences = 0;
   for (let i = 1; i < n - 1; i++) {
-    const second = (ys[i - 1] as number) - 2 * (ys[i] as number) + (ys[i + 1] as number);
+    const second = ys[i - 1] - 2 * ys[i] + ys[i + 1];
     differences += second * second;
   }
   const s = Math.sqrt(differences / (6 * (n - 2)));
   const u = s * Math.sqrt(weightSquares);
-  const ofY = shared(
-    y,
-    (c) => weights.reduce((total, w, i) => total + w * (c[rows.rows[i] as number] as number), 0),
-    (xs[n - 1] as number) - (xs[0] as number),
-  );
+  const ofY = shared(y, (c) => weights.reduce((total, w, i) => total + w * c[rows.rows[i]], 0), xs[n - 1] - xs[0]);
   const ofX = shared(
     x,
     (c) => {
       let total = 0;
       for (let i = 1; i < n; i++) {
-        const step = (c[rows.rows[i] as number] as number) - (c[rows.rows[i - 1] as number] as number);
-        total += (((ys[i] as number) + (ys[i - 1] as number)) / 2) * step;
+        const step = c[rows.rows[i]] - c[rows.rows[i - 1]];
+        total += ((ys[i] + ys[i - 1]) / 2) * step;
       }
       return total;
     },

@@ -112,7 +112,7 @@ type ReadUnit = { unit: Unit; end: number; ambiguous: string[] };
 function readUnit(text: string, at: number, spaced: boolean, loose: boolean): ReadUnit | null {
   const ambiguous: string[] = [];
   let end = at;
-  let start = at;
+  const start = at;
   const inverse = spaced && /^1\/[A-Za-zΩµμ(√]/.test(text.slice(at, at + 3));
   if (inverse) {
     end = at + 1;

@@ -16,7 +16,7 @@ export function columnUnit(column: Column): Unit {
   if (column.scale !== 'linear' && column.hint) return column.hint;
   let largest = 0;
   for (let row = 0; row < column.values.length; row++) {
-    const size = Math.abs(column.values[row] as number);
+    const size = Math.abs(column.values[row]);
     if (size > largest) largest = size;
   }
   return readableUnit(column.dimension, largest, column.hint);
@@ -26,7 +26,7 @@ export function columnUnit(column: Column): Unit {
 export function derivedColumn(symbol: string, column: Column, unit: Unit): DerivedColumn {
   const values = new Float64Array(column.values.length);
   for (let row = 0; row < values.length; row++) {
-    const value = column.values[row] as number;
+    const value = column.values[row];
     const shown =
       unit.scale === 'celsius'
         ? value - celsiusZero
@@ -51,12 +51,12 @@ function sharedInputs(column: Column, unit: Unit): SharedInput[] {
     if (input.u === 0) continue;
     const shift = new Float64Array(column.values.length);
     for (let row = 0; row < shift.length; row++) {
-      const moved = (typeof c === 'number' ? c : (c[row] as number)) * input.u;
+      const moved = (typeof c === 'number' ? c : c[row]) * input.u;
       shift[row] =
         unit.scale === 'celsius'
           ? moved
           : unit.scale === 'level'
-            ? ((moved / (column.values[row] as number)) * 10) / Math.LN10
+            ? ((moved / column.values[row]) * 10) / Math.LN10
             : inUnit(moved, unit);
     }
     const { id, label, dof, distribution } = input;

@@ -1,6 +1,6 @@
 import { describe, expect, it } from 'vitest';
-import { autoregressive, noise } from '@/tests/reference/noise';
-import { calculate, cellsOf, traceOf } from '@/tests/reference/trace-source';
+import { autoregressive, noise } from '@/lib/quantity/example-noise';
+import { calculate, cellsOf, traceOf } from './example-trace';
 import type { ValueResult } from './contract';
 import { evaluateSheet } from './evaluate';
 

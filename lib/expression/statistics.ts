@@ -45,7 +45,7 @@ export function gather(values: Float64Array, over: Over, label: string): Gathere
   let n = 0;
   for (const [start, end] of over.rows) {
     for (let row = start; row < end && row < values.length; row++) {
-      const value = values[row] as number;
+      const value = values[row];
       if (Number.isNaN(value)) continue;
       kept[n] = value;
       rows[n] = row;
@@ -133,7 +133,7 @@ export function named(scalar: Scalar, symbol: string): Scalar {
 
 function pick(series: Float64Array, gathered: Gathered): Float64Array {
   const result = new Float64Array(gathered.rows.length);
-  for (let i = 0; i < result.length; i++) result[i] = series[gathered.rows[i] as number] as number;
+  for (let i = 0; i < result.length; i++) result[i] = series[gathered.rows[i]];
   return result;
 }
 
@@ -165,9 +165,9 @@ export function meanOf(column: Column, over: Over, cache: StatisticsCache, warn:
   const gatheredAlone = column.values.length === 0 ? null : gatherIfSingle(column, over);
   if (gatheredAlone) {
     warn(`${overText(column, over)} is a single sample: its scatter is not known and no uncertainty is taken from it.`);
-    const row = gatheredAlone.rows[0] as number;
-    const terms = shared(column, (c) => c[row] as number, 1);
-    return { kind: 'scalar', value: gatheredAlone.values[0] as number, ...resulting, terms };
+    const row = gatheredAlone.rows[0];
+    const terms = shared(column, (c) => c[row], 1);
+    return { kind: 'scalar', value: gatheredAlone.values[0], ...resulting, terms };
   }
   const averaged = cache.averaged(column.values, over, column.label);
   const { gathered, blocked } = averaged;
@@ -204,8 +204,7 @@ export function sdOf(column: Column, over: Over, cache: StatisticsCache): Scalar
   const weigh = (c: Float64Array) => {
     const picked = pick(c, gathered);
     let products = 0;
-    for (let i = 0; i < picked.length; i++)
-      products += ((gathered.values[i] as number) - blocked.mean) * (picked[i] as number);
+    for (let i = 0; i < picked.length; i++) products += (gathered.values[i] - blocked.mean) * picked[i];
     return s > 0 ? products / ((blocked.count - 1) * s) : 0;
   };
   const hint = column.scale === 'linear' ? column.hint : null;
@@ -221,11 +220,9 @@ export function medianOf(column: Column, over: Over, cache: StatisticsCache, war
   const averaged = averagedOfTwo(column, over, cache, 'median');
   const { gathered, blocked } = averaged;
   for (const sentence of remarks(column, over, averaged)) warn(sentence);
-  const order = Array.from(gathered.values.keys()).sort(
-    (a, b) => (gathered.values[a] as number) - (gathered.values[b] as number),
-  );
+  const order = Array.from(gathered.values.keys()).sort((a, b) => gathered.values[a] - gathered.values[b]);
   const middle = order.slice((order.length - 1) >> 1, (order.length >> 1) + 1);
-  const at = (series: Float64Array) => middle.reduce((total, i) => total + (series[i] as number), 0) / middle.length;
+  const at = (series: Float64Array) => middle.reduce((total, i) => total + series[i], 0) / middle.length;
   const note = `${overText(column, over)}: ${count(blocked.count)} samples, ${count(blocked.effective)} effective; normal scatter assumed`;
   const u = blocked.u * Math.sqrt(Math.PI / 2);
   const found = { value: at(gathered.values), u, dof: blocked.dof, blockLength: blocked.blockLength, note };
@@ -251,19 +248,19 @@ export function countOf(column: Column, over: Over): Scalar {
 export function extremeOf(column: Column, over: Over, sign: 1 | -1, warn: (sentence: string) => void): Scalar {
   const { values, rows } = gather(column.values, over, column.label);
   let best = 0;
-  for (let i = 1; i < values.length; i++) if (sign * ((values[i] as number) - (values[best] as number)) > 0) best = i;
+  for (let i = 1; i < values.length; i++) if (sign * (values[i] - values[best]) > 0) best = i;
   const name = sign === 1 ? 'largest' : 'smallest';
   warn(
     `The ${name} sample of ${overText(column, over)} carries the uncertainty of offset and gain only, not of its scatter.`,
   );
-  const row = rows[best] as number;
+  const row = rows[best];
   const { dimension, scale, hint } = column;
   return {
     kind: 'scalar',
-    value: values[best] as number,
+    value: values[best],
     dimension,
     scale,
     hint,
-    terms: shared(column, (c) => c[row] as number, 1),
+    terms: shared(column, (c) => c[row], 1),
   };
 }

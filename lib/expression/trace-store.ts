@@ -1,5 +1,5 @@
 import { Refusal } from '@/lib/errors/refusal';
-import type { RowRanges } from '@/lib/quantity/input';
+import { rowsIdentity, type RowRanges } from '@/lib/quantity/input';
 import type { Column } from '@/lib/quantity/quantity';
 import { columnIndex, fileColumn, spanRows } from './columns';
 import { Pending, type Context, type SpanRows } from './context';
@@ -89,7 +89,7 @@ export class TraceStore {
     const rows = stored.value;
     if (rows.length === 0)
       throw new Refusal('no-data', `The span ${name} of ${handle} holds no rows: move it over the samples.`);
-    const rowsKey = rows.map(([start, end]) => `${start}-${end}`).join(',');
+    const rowsKey = rowsIdentity(rows);
     return { name, rows, rowsKey, axis: () => this.columnValue(handle, normaliseName(axis ?? '')) };
   }
 

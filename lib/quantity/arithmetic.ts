@@ -15,7 +15,7 @@ export type Partials = { z: Series; dx: Series; dy: Series };
 export function each(a: Series, f: (x: number) => number): Series {
   if (typeof a === 'number') return f(a);
   const result = new Float64Array(a.length);
-  for (let i = 0; i < a.length; i++) result[i] = f(a[i] as number);
+  for (let i = 0; i < a.length; i++) result[i] = f(a[i]);
   return result;
 }
 
@@ -23,12 +23,12 @@ export function each2(a: Series, b: Series, f: (x: number, y: number) => number)
   if (typeof a === 'number') {
     if (typeof b === 'number') return f(a, b);
     const result = new Float64Array(b.length);
-    for (let i = 0; i < b.length; i++) result[i] = f(a, b[i] as number);
+    for (let i = 0; i < b.length; i++) result[i] = f(a, b[i]);
     return result;
   }
   const result = new Float64Array(a.length);
-  if (typeof b === 'number') for (let i = 0; i < a.length; i++) result[i] = f(a[i] as number, b);
-  else for (let i = 0; i < a.length; i++) result[i] = f(a[i] as number, b[i] as number);
+  if (typeof b === 'number') for (let i = 0; i < a.length; i++) result[i] = f(a[i], b);
+  else for (let i = 0; i < a.length; i++) result[i] = f(a[i], b[i]);
   return result;
 }
 

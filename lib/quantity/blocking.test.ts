@@ -1,5 +1,5 @@
 import { describe, expect, it } from 'vitest';
-import { autoregressive, noise } from '@/tests/reference/noise';
+import { autoregressive, noise } from './example-noise';
 import { blockedCorrelation, blockedMean, drift, mean } from './blocking';
 import { incompleteGammaQ } from './gamma';
 import { coverageFactor } from './student';
@@ -108,8 +108,8 @@ describe('drift', () => {
 describe('correlation of two series', () => {
   it('is that of common noise', () => {
     const [a, b, c] = [autoregressive(20000, 0, 1), autoregressive(20000, 0, 2), autoregressive(20000, 0, 3)];
-    const x = a.map((v, i) => v + (c[i] as number));
-    const y = b.map((v, i) => v + (c[i] as number));
+    const x = a.map((v, i) => v + c[i]);
+    const y = b.map((v, i) => v + c[i]);
     // Cov = 1, variances 2: r = 1/2, standard error (1 − r²)/√n = 0.005.
     expect(Math.abs(blockedCorrelation(x, y, 1) - 0.5)).toBeLessThan(0.025);
     expect(blockedCorrelation(x, x, 1)).toBeCloseTo(1, 12);

@@ -39,7 +39,7 @@ export function mean(values: Float64Array): number {
   let lost = 0;
   // Neumaier's compensated sum: a million samples of one sign lose no digits.
   for (let i = 0; i < values.length; i++) {
-    const x = values[i] as number;
+    const x = values[i];
     const next = total + x;
     lost += Math.abs(total) >= Math.abs(x) ? total - next + x : x - next + total;
     total = next;
@@ -50,7 +50,7 @@ export function mean(values: Float64Array): number {
 /** Averages of neighbouring pairs; an odd last one is left out. */
 function halve(values: Float64Array): Float64Array {
   const result = new Float64Array(values.length >> 1);
-  for (let i = 0; i < result.length; i++) result[i] = ((values[2 * i] as number) + (values[2 * i + 1] as number)) / 2;
+  for (let i = 0; i < result.length; i++) result[i] = (values[2 * i] + values[2 * i + 1]) / 2;
   return result;
 }
 
@@ -64,7 +64,7 @@ function level(deviations: Float64Array): Level {
   let neighbours = 0;
   let before = 0;
   for (let i = 0; i < n; i++) {
-    const d = (deviations[i] as number) - centre;
+    const d = deviations[i] - centre;
     squares += d * d;
     if (i > 0) neighbours += d * before;
     before = d;
@@ -79,20 +79,20 @@ export function blockedMean(values: Float64Array): BlockedMean {
   const count = values.length;
   const centre = mean(values);
   let blocks: Float64Array = new Float64Array(count);
-  for (let i = 0; i < count; i++) blocks[i] = (values[i] as number) - centre;
+  for (let i = 0; i < count; i++) blocks[i] = values[i] - centre;
   const levels: Level[] = [];
   while (blocks.length >= 4 || levels.length === 0) {
     levels.push(level(blocks));
     blocks = halve(blocks);
   }
-  const first = levels[0] as Level;
+  const first = levels[0];
   const s = Math.sqrt(first.variance);
   const few = count < fewest;
   const found = few || s === 0 ? 0 : plateau(levels);
   // The last level with enough blocks stands where there is no plateau.
   const usable = levels.filter(({ n }) => n >= fewestBlocks).length - 1;
   const at = few ? 0 : Math.max(0, Math.min(found, usable));
-  const chosen = levels[at] as Level;
+  const chosen = levels[at];
   const u = Math.sqrt(chosen.variance / chosen.n);
   // Blocks of independent samples may come out below s/√n by chance; correlation that lowers u is not claimed.
   const effective = u > 0 ? Math.min(count, first.variance / (u * u)) : count;
@@ -118,7 +118,7 @@ function plateau(levels: Level[]): number {
   let first = levels.length;
   // From the last level down: M_l is the sum from l on.
   for (let l = levels.length - 1; l >= 0; l--) {
-    sum += (levels[l] as Level).statistic;
+    sum += levels[l].statistic;
     if (incompleteGammaQ((levels.length - l) / 2, sum / 2) > 1 - confidence) first = l;
   }
   return first === 0 ? 0 : first + 1;
@@ -138,10 +138,10 @@ export function drift(values: Float64Array): Drift {
   const centre = mean(values);
   const middle = (n - 1) / 2;
   let products = 0;
-  for (let i = 0; i < n; i++) products += (i - middle) * ((values[i] as number) - centre);
+  for (let i = 0; i < n; i++) products += (i - middle) * (values[i] - centre);
   const slope = products / ((n * (n * n - 1)) / 12);
   const rest = new Float64Array(n);
-  for (let i = 0; i < n; i++) rest[i] = (values[i] as number) - centre - slope * (i - middle);
+  for (let i = 0; i < n; i++) rest[i] = values[i] - centre - slope * (i - middle);
   const change = slope * (n - 1);
   // A slope over equally spaced samples has √12 times the mean's uncertainty over the whole length.
   const u = blockedMean(rest).u * Math.sqrt(12);
@@ -158,7 +158,7 @@ export function blockedCorrelation(a: Float64Array, b: Float64Array, blockLength
     const start = series[0] ?? 0;
     for (let i = 0; i < n * length; i++) {
       const block = Math.floor(i / length);
-      result[block] = (result[block] as number) + ((series[i] as number) - start) / length;
+      result[block] = result[block] + (series[i] - start) / length;
     }
     return result;
   };
@@ -168,8 +168,8 @@ export function blockedCorrelation(a: Float64Array, b: Float64Array, blockLength
   let yy = 0;
   let xy = 0;
   for (let i = 0; i < n; i++) {
-    const dx = (x[i] as number) - mx;
-    const dy = (y[i] as number) - my;
+    const dx = x[i] - mx;
+    const dy = y[i] - my;
     xx += dx * dx;
     yy += dy * dy;
     xy += dx * dy;

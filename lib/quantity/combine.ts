@@ -69,7 +69,7 @@ function combineCorrelated(scalar: Scalar, correlations: Correlations): Combined
   let acrossGroups: [Input, Input] | null = null;
   for (let i = 0; i < sampled.length; i++) {
     for (let j = i + 1; j < sampled.length; j++) {
-      const [a, b] = [sampled[i] as Contribution, sampled[j] as Contribution];
+      const [a, b] = [sampled[i], sampled[j]];
       const { r, known } = correlations.between(a.input, b.input);
       if (!known) {
         warnings.push(

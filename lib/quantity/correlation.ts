@@ -11,7 +11,7 @@ export function rowsInCommon(a: RowRanges, b: RowRanges): RowRanges {
   let i = 0;
   let j = 0;
   while (i < a.length && j < b.length) {
-    const [p, q] = [a[i] as readonly [number, number], b[j] as readonly [number, number]];
+    const [p, q] = [a[i], b[j]];
     const start = Math.max(p[0], q[0]);
     const end = Math.min(p[1], q[1]);
     if (start < end) common.push([start, end]);
@@ -54,7 +54,7 @@ function measured(a: Sample, b: Sample): Correlation {
   let n = 0;
   for (const [start, end] of common) {
     for (let row = start; row < end; row++) {
-      const [p, q] = [a.values[row] as number, b.values[row] as number];
+      const [p, q] = [a.values[row], b.values[row]];
       if (Number.isNaN(p) || Number.isNaN(q)) continue;
       x[n] = p;
       y[n] = q;

@@ -5,6 +5,34 @@ import type { Unit } from '@/lib/units/parse';
 /** Rows of a trace as half-open ranges [start, end), ascending and apart. */
 export type RowRanges = readonly (readonly [number, number])[];
 
+const identities = new WeakMap<RowRanges, string>();
+
+/**
+ * Short text that is equal for equal rows. A span over a noisy axis has as many ranges as rows: many ranges are
+ * told apart by two independent 32-bit hashes (FNV-1a with different starts), together with their number and ends.
+ */
+export function rowsIdentity(rows: RowRanges): string {
+  const known = identities.get(rows);
+  if (known !== undefined) return known;
+  const first = rows[0];
+  const last = rows.at(-1);
+  let identity: string;
+  if (!first || !last || rows.length <= 12) {
+    identity = rows.map(([start, end]) => `${start}-${end}`).join(',');
+  } else {
+    let a = 0x811c9dc5;
+    let b = 0x2545f491;
+    for (const [start, end] of rows) {
+      a = Math.imul(Math.imul(a ^ start, 0x01000193) ^ end, 0x01000193);
+      b = Math.imul(Math.imul(b ^ end, 0x01000193) ^ (start + 0x9e37), 0x01000193);
+      b ^= b >>> 15;
+    }
+    identity = `${first[0]}-${last[1]} in ${rows.length} ranges, ${(a >>> 0).toString(16)}${(b >>> 0).toString(16)}`;
+  }
+  identities.set(rows, identity);
+  return identity;
+}
+
 /** What a statistic was taken from: kept so that two of them over common rows know their correlation. */
 export type Sample = {
   /** Of the file that the samples stand in. */

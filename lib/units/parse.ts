@@ -172,9 +172,9 @@ class UnitReader {
     unitNamePattern.lastIndex = this.at;
     const name = unitNamePattern.exec(this.text)?.[0];
     if (name === undefined) this.fail();
-    const found = findUnit(name as string);
-    if (!found) throw unknownUnit(name as string);
-    this.at += (name as string).length;
+    const found = findUnit(name);
+    if (!found) throw unknownUnit(name);
+    this.at += name.length;
     return this.raised([{ ...found, exponent: 1 }]);
   }
 

@@ -1,7 +1,7 @@
 import { describe, expect, it } from 'vitest';
 import { evaluateSheet } from '@/lib/expression/evaluate';
 import { parseUnit } from '@/lib/units/parse';
-import { cellsOf, traceOf } from '@/tests/reference/trace-source';
+import { cellsOf, traceOf } from '@/lib/expression/example-trace';
 
 /**
  * Attack case 101: escape from the expression engine, endless evaluation, huge results. Each line must come back as a

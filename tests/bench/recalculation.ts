@@ -1,7 +1,7 @@
 import { evaluateSheet } from '@/lib/expression/evaluate';
 import type { CellSource, Sheet, TraceSource } from '@/lib/expression/contract';
-import { autoregressive } from '../reference/noise';
-import { cellsOf, traceOf } from '../reference/trace-source';
+import { autoregressive } from '@/lib/quantity/example-noise';
+import { cellsOf, traceOf } from '@/lib/expression/example-trace';
 
 export type BenchRow = { name: string; ours: number; peer: number | null; ratio: number | null; n: number };
 

@@ -2,7 +2,7 @@ import { describe, expect, it } from 'vitest';
 import { constants } from '@/lib/constants/constants';
 import { evaluateSheet } from '@/lib/expression/evaluate';
 import reference from './constants.json';
-import { cellsOf } from './trace-source';
+import { cellsOf } from '@/lib/expression/example-trace';
 
 function value(source: string, unit: string | null = null): number {
   const sheet = evaluateSheet({ cells: [{ id: 'y', source, unit, digits: null }], traces: [] });

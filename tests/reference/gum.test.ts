@@ -3,7 +3,7 @@ import { evaluateSheet } from '@/lib/expression/evaluate';
 import type { Sheet, TraceSource, ValueResult } from '@/lib/expression/contract';
 import { coverageFactor } from '@/lib/quantity/student';
 import reference from './gum.json';
-import { cellsOf, traceOf } from './trace-source';
+import { cellsOf, traceOf } from '@/lib/expression/example-trace';
 
 type Line = string | [source: string, unit: string];
 

@@ -1,7 +1,7 @@
 import { describe, expect, it } from 'vitest';
 import { evaluateSheet } from '@/lib/expression/evaluate';
 import published from './published-figures.json';
-import { cellsOf } from './trace-source';
+import { cellsOf } from '@/lib/expression/example-trace';
 
 // Published pump currents as quoted and rounded; references and whether they were read stand in published-figures.json.
 describe('published pump currents', () => {

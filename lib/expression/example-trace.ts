@@ -1,5 +1,5 @@
-import type { RawColumn, Sheet, TraceSource, ValueResult } from '@/lib/expression/contract';
-import { evaluateSheet } from '@/lib/expression/evaluate';
+import type { RawColumn, Sheet, TraceSource, ValueResult } from './contract';
+import { evaluateSheet } from './evaluate';
 import type { Span, StatedQuantity, TraceSettings } from '@/lib/document/attributes';
 
 export type GivenColumn = {
