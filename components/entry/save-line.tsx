@@ -65,7 +65,7 @@ export function SaveLine({ draft, onCompare, onRenew }: Props) {
           The text stays in this browser. Copy what you need, or amend the entry. <a href="">Show the entry</a>
         </span>
       ) : null}
-      {draft.cutting ? <span className="text-quiet">cutting a version</span> : null}
+      {draft.cutting ? <span className="text-quiet"> cutting a version</span> : null}
       {!keeps ? (
         <p className="save-notice" role="alert">
           This browser keeps nothing on its own (private window, or its storage is full or switched off). Text that the

@@ -3,6 +3,7 @@
 import Link from 'next/link';
 import { usePathname } from 'next/navigation';
 import { FindButton } from '@/components/commands/command-menu';
+import { maySignOut } from '@/components/entry/may-sign-out';
 import { request } from '@/components/hooks/request';
 import { Mark } from '@/components/ui/stair';
 import { ThemeSwitch } from '@/components/ui/theme-switch';
@@ -75,7 +76,7 @@ export function BookHeader({
                 </p>
               ) : null}
               <ThemeSwitch />
-              <SignOut />
+              <SignOut personId={person.id} />
             </div>
           </details>
         </div>
@@ -84,8 +85,9 @@ export function BookHeader({
   );
 }
 
-function SignOut() {
+function SignOut({ personId }: { personId: string }) {
   const leave = async () => {
+    if (!(await maySignOut(personId))) return;
     await request('POST', '/api/auth/sign-out', {});
     window.location.assign('/sign-in');
   };

@@ -1,4 +1,4 @@
-import { diffWordsWithSpace } from 'diff';
+import { diffArrays } from 'diff';
 import type { DocumentJson, NodeJson } from './json';
 import { valueLine } from './nodes/value';
 import { sameDocument } from './same';
@@ -28,9 +28,14 @@ export type DocumentDifference = {
 
 const idOf = (block: NodeJson, index: number) => (typeof block.attrs?.id === 'string' ? block.attrs.id : `#${index}`);
 
+/** Words, numbers with their sign, point and uncertainty (`-0.620(3)`), spaces and signs: a number changes as a whole. */
+function wordsOf(text: string): string[] {
+  return text.match(/\s+|[-+−]?\d+(?:[.,]\d+)*(?:\(\d+\))?(?:[eE][-+]?\d+)?|[\p{L}\p{M}\p{N}_]+|[^\s]/gu) ?? [];
+}
+
 export function textDifference(before: string, after: string): TextPart[] {
   if (before === after) return before === '' ? [] : [{ text: before, change: 'same' }];
-  const changes = diffWordsWithSpace(before, after, { timeout: 500 });
+  const changes = diffArrays(wordsOf(before), wordsOf(after), { timeout: 500 });
   if (!changes) {
     const whole: TextPart[] = [
       { text: before, change: 'removed' },
@@ -39,7 +44,7 @@ export function textDifference(before: string, after: string): TextPart[] {
     return whole.filter((part) => part.text !== '');
   }
   return changes.map((part) => ({
-    text: part.value,
+    text: part.value.join(''),
     change: part.added ? 'added' : part.removed ? 'removed' : 'same',
   }));
 }
