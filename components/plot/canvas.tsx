@@ -141,6 +141,8 @@ function drawCursor(plot: uPlot, x: number | null): void {
 /** The drawn plot on a canvas. Everything it says in pixels, its surroundings say in words. */
 export function PlotCanvas(props: Props) {
   const { views, x, y, spans, cursor, mode, width, height } = props;
+  const [xFrom, xTo] = x.range;
+  const [yFrom, yTo] = y.range;
   const host = useRef<HTMLDivElement>(null);
   const drawn = useRef<uPlot | null>(null);
   const latest = useRef(props);
@@ -247,13 +249,13 @@ export function PlotCanvas(props: Props) {
     x.label,
     x.unit,
     x.log,
-    x.range[0],
-    x.range[1],
+    xFrom,
+    xTo,
     y.label,
     y.unit,
     y.log,
-    y.range[0],
-    y.range[1],
+    yFrom,
+    yTo,
   ]);
 
   useEffect(() => {

@@ -23,15 +23,12 @@ export type SvgPlot = {
 };
 
 export function escapeXml(text: string): string {
-  return (
-    text
-      // eslint-disable-next-line no-control-regex -- XML 1.0 has no way to write these characters
-      .replace(/[\u0000-\u0008\u000b\u000c\u000e-\u001f]/g, '')
-      .replaceAll('&', '&amp;')
-      .replaceAll('<', '&lt;')
-      .replaceAll('>', '&gt;')
-      .replaceAll('"', '&quot;')
-  );
+  return text
+    .replace(/[\u0000-\u0008\u000b\u000c\u000e-\u001f]/g, '')
+    .replaceAll('&', '&amp;')
+    .replaceAll('<', '&lt;')
+    .replaceAll('>', '&gt;')
+    .replaceAll('"', '&quot;');
 }
 
 /** Maps a value to its place on an axis; NaN where a logarithmic axis cannot show it. */

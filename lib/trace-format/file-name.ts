@@ -2,7 +2,6 @@
 
 const longest = 255;
 // Control characters, and those that turn the direction of the text around them (Unicode UAX #9, table 4) or take no room.
-// eslint-disable-next-line no-control-regex -- control characters are what is looked for
 const unseen = /[\u0000-\u001f\u007f-\u009f\u061c\u200b-\u200f\u2028-\u202e\u2060-\u2069\ufeff]/g;
 
 /**

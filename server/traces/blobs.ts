@@ -1,7 +1,9 @@
 import 'server-only';
 import { createHash, randomBytes } from 'node:crypto';
+import { createReadStream } from 'node:fs';
 import fs from 'node:fs/promises';
 import path from 'node:path';
+import { Readable } from 'node:stream';
 import { AppError } from '@/lib/errors/app-error';
 import { syncFolder } from '@/server/db/files';
 import { env } from '@/server/env/env';
@@ -88,6 +90,11 @@ export async function blobHead(sha256: string, length = 64): Promise<Uint8Array>
   } finally {
     await handle.close();
   }
+}
+
+/** The bytes of a stored file, read as they are asked for. */
+export function blobStream(sha256: string): ReadableStream<Uint8Array> {
+  return Readable.toWeb(createReadStream(/* turbopackIgnore: true */ blobPath(sha256))) as ReadableStream<Uint8Array>;
 }
 
 export async function hasBlob(sha256: string): Promise<boolean> {

@@ -31,10 +31,10 @@ async function readSamples(handle: fs.FileHandle, from: number, to: number): Pro
   return samples;
 }
 
-async function withFile<T>(file: string, use: (handle: fs.FileHandle) => Promise<T>): Promise<T> {
+async function withFile<T>(file: string, read: (handle: fs.FileHandle) => Promise<T>): Promise<T> {
   const handle = await fs.open(file, 'r');
   try {
-    return await use(handle);
+    return await read(handle);
   } finally {
     await handle.close();
   }

@@ -13,11 +13,10 @@ import { report } from '@/server/diagnostics/report';
 import { env } from '@/server/env/env';
 import { enqueueJob } from '@/server/jobs/service';
 import { appendLog } from '@/server/log/service';
-import { blobHead, hasBlob, storeBlob, sweepBlobs } from './blobs';
+import { blobHead, blobStream, hasBlob, storeBlob, sweepBlobs } from './blobs';
 import { readFacts, ingestBlob, type IngestLimits } from './ingest';
 import * as queries from './queries';
 
-export { blobPath } from './blobs';
 export { readColumn, readRows, readView } from './columns';
 
 export type ReceivedFile = {
@@ -207,7 +206,7 @@ export async function traceDetail(id: string): Promise<TraceDetail> {
 export async function storedFile(
   id: string,
   kind: 'trace' | 'picture',
-): Promise<{ sha256: string; bytes: number; fileName: string; mediaType: string }> {
+): Promise<{ content: ReadableStream<Uint8Array>; bytes: number; fileName: string; mediaType: string }> {
   const row = await queries.findTrace(await getDb(), id);
   if (!row || row.kind !== kind) throw new AppError('not_found', 'There is nothing here, or it is not for you to see.');
   if (!(await hasBlob(row.sha256))) {
@@ -217,7 +216,7 @@ export async function storedFile(
     );
   }
   const { sha256, bytes, fileName, mediaType } = row;
-  return { sha256, bytes, fileName, mediaType };
+  return { content: blobStream(sha256), bytes, fileName, mediaType };
 }
 
 /** The digest that a parsed trace's columns are read by. */

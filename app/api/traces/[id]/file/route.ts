@@ -1,26 +1,21 @@
-import { createReadStream } from 'node:fs';
-import { Readable } from 'node:stream';
 import { attachmentHeader } from '@/lib/trace-format/file-name';
 import { withAccess } from '@/server/access/route';
 import { noteServed } from '@/server/signing/service';
-import { blobPath, storedFile } from '@/server/traces/service';
+import { storedFile } from '@/server/traces/service';
 
 /** The bytes as they were received: always a download, never a page of this origin, whatever the file says it is. */
 export const GET = withAccess({ action: 'trace.read' }, async ({ scope }) => {
-  const { sha256, bytes, fileName } = await storedFile(scope.traceId, 'trace');
+  const { content, bytes, fileName } = await storedFile(scope.traceId, 'trace');
   if (scope.entry) await noteServed(scope.person.id, scope.entry, scope.traceId);
-  return new Response(
-    Readable.toWeb(createReadStream(/* turbopackIgnore: true */ blobPath(sha256))) as ReadableStream<Uint8Array>,
-    {
-      headers: {
-        'content-type': 'application/octet-stream',
-        'content-length': String(bytes),
-        'content-disposition': attachmentHeader(fileName),
-        'content-security-policy': "default-src 'none'; sandbox",
-        'cross-origin-resource-policy': 'same-origin',
-        'x-content-type-options': 'nosniff',
-        'cache-control': 'private, no-store',
-      },
+  return new Response(content, {
+    headers: {
+      'content-type': 'application/octet-stream',
+      'content-length': String(bytes),
+      'content-disposition': attachmentHeader(fileName),
+      'content-security-policy': "default-src 'none'; sandbox",
+      'cross-origin-resource-policy': 'same-origin',
+      'x-content-type-options': 'nosniff',
+      'cache-control': 'private, no-store',
     },
-  );
+  });
 });
