@@ -11,6 +11,7 @@ import { env } from '@/server/env/env';
 import { forgetDoneJobs, releaseLeases, startWorker } from '@/server/jobs/service';
 import { sendDueMail } from '@/server/mail/service';
 import { serveCommands } from '@/server/commands/socket';
+import { settleTraces } from '@/server/traces/service';
 import { jobHandlers } from './handlers';
 
 const copyEveryMs = 6 * 3600_000;
@@ -32,6 +33,8 @@ export async function startServer(): Promise<void> {
   }
   await releaseLeases();
   await firstContent();
+  // Files received before a crash are read now, beside the first requests.
+  settleTraces().catch((error) => report('settling traces', {}, error));
   const stopCommands = await serveCommands();
   const lastRun = { mail: 0, copy: Date.now() - copyEveryMs + 60_000, tidy: Date.now() };
   const worker = startWorker(jobHandlers, async () => {
@@ -44,6 +47,7 @@ export async function startServer(): Promise<void> {
       lastRun.tidy = now;
       await forgetOldTurns();
       await forgetDoneJobs();
+      await settleTraces();
       await opened.vacuum();
     }
     if (now - lastRun.copy >= copyEveryMs) {
