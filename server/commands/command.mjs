@@ -7,7 +7,9 @@ const root = path.resolve(import.meta.dirname, '../..');
 process.chdir(root);
 const compiled = path.join(root, 'dist/commands/run.mjs');
 if (!existsSync(compiled)) {
-  const installed = spawnSync(process.execPath, ['server/commands/start.mjs', '--install-only'], { stdio: ['ignore', 2, 2] });
+  const installed = spawnSync(process.execPath, ['server/commands/start.mjs', '--install-only'], {
+    stdio: ['ignore', 2, 2],
+  });
   const built = spawnSync(process.execPath, ['server/commands/build.mjs'], { stdio: ['ignore', 2, 2] });
   if (installed.status !== 0 || built.status !== 0) process.exit(1);
 }
