@@ -12,7 +12,6 @@ import { user } from '@/server/db/schema/people';
 import { report } from '@/server/diagnostics/report';
 import { env } from '@/server/env/env';
 import { enqueueJob } from '@/server/jobs/service';
-import { enqueueJob } from '@/server/jobs/service';
 import { appendLog } from '@/server/log/service';
 import { blobHead, blobStream, hasBlob, storeBlob, sweepBlobs } from './blobs';
 import { readFacts, ingestBlob, type IngestLimits } from './ingest';
@@ -82,7 +81,6 @@ export async function receiveFile(file: ReceivedFile): Promise<UploadOutcome> {
       receivedAt: now(),
     };
     if (!(await queries.insertTrace(tx, row))) return false;
-    if (kind === 'trace') await enqueueJob(tx, 'ingest trace', `ingest ${id}`, { traceId: id });
     await appendLog(tx, {
       kind: 'trace received',
       actorId: personId,
