@@ -91,7 +91,9 @@ test('a line that cannot be calculated says why beside it, and stays as typed', 
 test('a paste of 20 000 characters arrives whole', async ({ browser }) => {
   const { context, page } = await windowOf(browser, 'tomas');
   const address = await freshSheet(page, 'A long paste');
-  const long = Array.from({ length: 200 }, (_, i) => `${String(i).padStart(4, '0')} ${'helium '.repeat(14)}`.slice(0, 99)).join('\n');
+  const long = Array.from({ length: 200 }, (_, i) =>
+    `${String(i).padStart(4, '0')} ${'helium '.repeat(14)}`.slice(0, 99),
+  ).join('\n');
   expect(long.length).toBeGreaterThan(19_900);
   await paste(page, [{ type: 'text/plain', text: long }]);
   await expect(text(page)).toContainText('0199 helium');
@@ -175,7 +177,9 @@ test('fault 25: what one window saves shows in the other that has nothing unsent
   await context.close();
 });
 
-test('fault 27: a session that ends while somebody writes is renewed in place, and the text arrives', async ({ browser }) => {
+test('fault 27: a session that ends while somebody writes is renewed in place, and the text arrives', async ({
+  browser,
+}) => {
   const { context, page } = await windowOf(browser, 'tomas');
   const address = await freshSheet(page, 'A session that ends');
   const cookies = await context.cookies();

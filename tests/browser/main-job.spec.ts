@@ -29,7 +29,8 @@ const onOff = onOffRun(frequency, 0.92, 0.21);
 const messy = ['fortran_d.dat', 'log_quoted.csv', 'map_long_03.tsv', 'sweep_2031-02-10_a.csv'];
 
 type Expected = { file: string; n_rows?: number; shape?: [number, number]; columns?: Record<string, unknown[]> };
-const expected = (JSON.parse(readFileSync('tests/reference/messy/expected.json', 'utf8')) as { files: Expected[] }).files;
+const expected = (JSON.parse(readFileSync('tests/reference/messy/expected.json', 'utf8')) as { files: Expected[] })
+  .files;
 
 /** Rows of a file as pandas found them, with the thin spaces in which the page groups digits. */
 function rowsIn(name: string): string {
@@ -83,7 +84,10 @@ test('the administrator invites two people by mail, and both join', async ({ bro
     await context.close();
   }
   await ada.page.goto('/notebooks/NB-03');
-  await expect(ada.page.getByRole('heading', { name: /not|nothing/i }), 'an administrator reads no notebook').toBeVisible();
+  await expect(
+    ada.page.getByRole('heading', { name: /not|nothing/i }),
+    'an administrator reads no notebook',
+  ).toBeVisible();
   await ada.context.close();
 });
 
@@ -192,7 +196,8 @@ test('spans by typed numbers and by dragging, values with the right result and t
   expect(Math.abs(shown.value - escape)).toBeLessThanOrEqual(shown.step * 0.5000001);
   // Scatter of four uniform numbers: variance 1/3 fA². White noise gives u = s·√(1/n₁ + 1/n₂); a correlation that was seen may add.
   const count = ([from, to]: [number, number]) => (to - from) * 20;
-  const white = (Math.sqrt((1 / 3) * (1 / count([16, 44]) + 1 / count([low, high]))) * 1e-15) / (elementaryCharge * frequency);
+  const white =
+    (Math.sqrt((1 / 3) * (1 / count([16, 44]) + 1 / count([low, high]))) * 1e-15) / (elementaryCharge * frequency);
   expect(shown.u).toBeGreaterThan(0.8 * white);
   expect(shown.u).toBeLessThan(2.5 * white);
 
@@ -263,7 +268,11 @@ test('signing shows what is bound, asks for the password again, and ends the wri
   await expect(page.getByRole('region', { name: 'Values bound' })).toContainText(shownEscape.split(' = ')[1]!);
   await expect(main).toContainText(createHash('sha256').update(onOff.file).digest('hex'));
   for (const name of messy) {
-    await expect(main).toContainText(createHash('sha256').update(readFileSync(`tests/reference/messy/${name}`)).digest('hex'));
+    await expect(main).toContainText(
+      createHash('sha256')
+        .update(readFileSync(`tests/reference/messy/${name}`))
+        .digest('hex'),
+    );
   }
   await page.getByLabel('Priya Menon').check();
   await page.getByLabel('Your password, again').fill('not my password');
@@ -277,7 +286,13 @@ test('signing shows what is bound, asks for the password again, and ends the wri
   await expect(text(page)).toHaveCount(0);
   await expect(page.getByRole('toolbar', { name: 'Writing' })).toHaveCount(0);
   const refused = await page.request.put(`/api${address}/draft`, {
-    data: { basedOn: 1, title: 'changed after signing', doc: { type: 'doc', content: [] }, written: {}, clockOffsetMs: 0 },
+    data: {
+      basedOn: 1,
+      title: 'changed after signing',
+      doc: { type: 'doc', content: [] },
+      written: {},
+      clockOffsetMs: 0,
+    },
   });
   expect(refused.status()).toBeGreaterThanOrEqual(400);
   await page.reload();
@@ -290,7 +305,9 @@ test('the witness reads, asks, waits for the answer, and countersigns what was r
   windows.push(priya.context);
   const witness = priya.page;
   const said = watch(witness);
-  expect(await mailTo(witness, mailOf('priya'), new RegExp(`Please countersign NB-03 leaf ${leaf}`))).toContain(address);
+  expect(await mailTo(witness, mailOf('priya'), new RegExp(`Please countersign NB-03 leaf ${leaf}`))).toContain(
+    address,
+  );
   await witness.goto('/countersign');
   await witness.getByRole('link', { name: title }).click();
   await expect(witness.getByRole('button', { name: `value ${shownEscape}` })).toBeVisible();
@@ -350,7 +367,13 @@ test('a reader reads; somebody outside the notebook finds nothing', async ({ bro
     expect(response?.status(), where).toBe(404);
     await expect(other.page.getByText(title)).toHaveCount(0);
   }
-  for (const where of [`/api${address}`, `/api${address}/draft`, `/api${path}`, `/api${path}/file`, `/api${path}/rows`]) {
+  for (const where of [
+    `/api${address}`,
+    `/api${address}/draft`,
+    `/api${path}`,
+    `/api${path}/file`,
+    `/api${path}/rows`,
+  ]) {
     const response = await other.page.request.get(where);
     expect(response.status(), where).toBe(404);
   }

@@ -15,9 +15,7 @@ export function onOffRun(frequencyHz: number, escape: number, offsetFa: number, 
     const t = Number(((i * 120) / rows).toFixed(3));
     const on = (t >= 14 && t < 46) || (t >= 74 && t < 106);
     const scatter = uniform() + uniform() + uniform() + uniform() - 2;
-    const current = Number(
-      (offsetFa + (on ? escape * elementaryCharge * frequencyHz * 1e15 : 0) + scatter).toFixed(3),
-    );
+    const current = Number((offsetFa + (on ? escape * elementaryCharge * frequencyHz * 1e15 : 0) + scatter).toFixed(3));
     samples.push({ t, current });
     lines.push(`${t.toFixed(3)},${current.toFixed(3)}`);
   }

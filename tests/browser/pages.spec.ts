@@ -67,7 +67,9 @@ async function visit(browser: Browser, under: PageUnderTest) {
     expect.soft(await findings(page, true), 'axe, dark').toEqual([]);
     await page.setViewportSize({ width: 360, height: 740 });
     await expect
-      .soft(async () => expect(await page.evaluate(() => document.documentElement.scrollWidth)).toBeLessThanOrEqual(360))
+      .soft(async () =>
+        expect(await page.evaluate(() => document.documentElement.scrollWidth)).toBeLessThanOrEqual(360),
+      )
       .toPass({ timeout: 5_000 });
     expect.soft(said, 'console').toEqual([]);
   } finally {

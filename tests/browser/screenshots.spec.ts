@@ -7,9 +7,14 @@ import { entryAddress, windowOf, type DemoPerson } from './people';
 const folder = 'test-results/screenshots';
 mkdirSync(folder, { recursive: true });
 
-const day = (ending = '') => async (page: Page) =>
-  `${await entryAddress(page, 'NB-03', 'Escape over the exit barrier, day two')}${ending}`;
-const draft = (ending = '') => async (page: Page) => `${await entryAddress(page, 'NB-03', 'Escape at −606 mV')}${ending}`;
+const day =
+  (ending = '') =>
+  async (page: Page) =>
+    `${await entryAddress(page, 'NB-03', 'Escape over the exit barrier, day two')}${ending}`;
+const draft =
+  (ending = '') =>
+  async (page: Page) =>
+    `${await entryAddress(page, 'NB-03', 'Escape at −606 mV')}${ending}`;
 
 const shots: { name: string; as: DemoPerson; where: (page: Page) => Promise<string>; plots: boolean }[] = [
   { name: 'today', as: 'ines', where: async () => '/', plots: false },
