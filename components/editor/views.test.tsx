@@ -60,7 +60,7 @@ async function sheet(doc: DocumentJson, mode: 'write' | 'read' = 'write', traces
 describe('every node, JSON → view → JSON', () => {
   it.each(['write', 'read'] as const)('%s mode gives the sample back unchanged', async (mode) => {
     const sample = sampleDocument();
-    const { editor, json, press } = await sheet(sample, mode);
+    const { json } = await sheet(sample, mode);
     await screen
       .findByText('GA1-B3 in its carrier', { exact: false })
       .catch(() => screen.findByDisplayValue('GA1-B3 in its carrier'));
@@ -68,7 +68,7 @@ describe('every node, JSON → view → JSON', () => {
   });
 
   it('reading changes nothing, whatever is clicked', async () => {
-    const { editor, json, press } = await sheet(sampleDocument(), 'read');
+    const { json } = await sheet(sampleDocument(), 'read');
     const user = userEvent.setup();
     for (const button of screen.getAllByRole('button')) await user.click(button);
     expect(json()).toEqual(sampleDocument());
@@ -98,7 +98,7 @@ describe('72 names as HTML', () => {
       type: 'caution',
       attrs: { id: 'caution_1', acknowledgedAt: '2026-11-19T09:02:00+01:00', acknowledgedBy: evil },
     };
-    const { editor, json, press } = await sheet(docOf(caution, node), 'write', [file]);
+    const { editor } = await sheet(docOf(caution, node), 'write', [file]);
     await waitFor(() => expect(document.body.textContent).toContain(`${evil}.csv`));
     expect(document.querySelector('img[src="x"]')).toBeNull();
     expect((window as unknown as { hit?: number }).hit).toBeUndefined();
@@ -114,7 +114,7 @@ describe('value', () => {
   );
 
   it('shows symbol and result, and keeps the result in the document without an undo step', async () => {
-    const { editor, json, press } = await sheet(doc);
+    const { editor, json } = await sheet(doc);
     await screen.findByRole('button', { name: /^value n = 0\.936/ });
     const shown = () => json().content![1]!.content![0]!.attrs!.shown as string;
     await waitFor(() => expect(shown()).toMatch(/^0\.936/));
@@ -139,7 +139,7 @@ describe('value', () => {
   });
 
   it('Escape leaves the line as it was; an empty new one disappears', async () => {
-    const { editor, json, press } = await sheet(doc);
+    const { editor, json } = await sheet(doc);
     const user = userEvent.setup();
     editor.commands.setTextSelection(editor.state.doc.content.size - 1);
     insertValue(editor);
@@ -183,7 +183,7 @@ describe('writing', () => {
   });
 
   it('$…$ becomes an equation, prices do not', async () => {
-    const { editor, json, press } = await sheet(docOf(paragraph('line_one')));
+    const { editor, json } = await sheet(docOf(paragraph('line_one')));
     const type = (words: string) => {
       for (const letter of words) {
         const { from, to } = editor.state.selection;
@@ -232,7 +232,7 @@ describe('writing', () => {
   });
 
   it('takes 20 000 pasted characters', async () => {
-    const { editor, json, press } = await sheet(docOf(paragraph('line_one')));
+    const { editor, json } = await sheet(docOf(paragraph('line_one')));
     const words = 'level 61 %, bath at 4.21 K. '.repeat(720);
     editor.view.pasteText(words, new Event('paste') as ClipboardEvent);
     expect(editor.getText().length).toBeGreaterThanOrEqual(20_000);
@@ -240,7 +240,7 @@ describe('writing', () => {
   });
 
   it('acknowledging the caution keeps name and time', async () => {
-    const { editor, json, press } = await sheet(
+    const { json } = await sheet(
       docOf({ type: 'caution', attrs: { id: 'caution_1', acknowledgedAt: null, acknowledgedBy: null } }),
     );
     await userEvent.setup().click(await screen.findByRole('button', { name: 'I have read this' }));
@@ -263,7 +263,7 @@ describe('paste from a spreadsheet', () => {
   });
 
   it('makes a valid table whose first row of words is its head', async () => {
-    const { editor, json, press } = await sheet(docOf(paragraph('line_one')));
+    const { editor } = await sheet(docOf(paragraph('line_one')));
     const node = tableNode(editor.schema, [
       ['V/mV', 'I/pA'],
       ['-620', '29.7'],

@@ -55,7 +55,7 @@ export function ReadingSheet({ entry, version, person }: Props) {
         <article className="sheet" aria-label={`${entry.notebook.code} leaf ${entry.leaf}`}>
           <SheetHead entry={entry} title={version.title} version={version} onTitle={null} />
           {/* The mouse chooses a block here; the keyboard does through the values, the traces and the list in the form to ask. */}
-          {/* eslint-disable-next-line jsx-a11y/click-events-have-key-events, jsx-a11y/no-static-element-interactions -- see above */}
+          {}
           <div onClick={choose}>
             <GutterNote stamps={version.stamps}>
               {editor ? <EditorContent editor={editor} /> : <StaticText doc={version.doc} />}

@@ -222,7 +222,7 @@ export function WritingSheet({ entry, draft: first, person, build }: Props) {
           onSign={entry.may.sign ? () => void sign() : undefined}
         />
       </div>
-      <RenewDialog open={renewing} onOpenChange={setRenewing} personName={person.name} onRenewed={draft.resume} />
+      <RenewDialog open={renewing} onOpenChange={setRenewing} person={person} onRenewed={draft.resume} />
     </SheetProvider>
   );
 }

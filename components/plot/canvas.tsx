@@ -240,23 +240,7 @@ export function PlotCanvas(props: Props) {
     };
     // The parts of an axis are compared one by one: the objects are made anew with every rendering.
     // eslint-disable-next-line react-hooks/exhaustive-deps -- see above
-  }, [
-    views,
-    width,
-    height,
-    mode,
-    theme,
-    x.label,
-    x.unit,
-    x.log,
-    xFrom,
-    xTo,
-    y.label,
-    y.unit,
-    y.log,
-    yFrom,
-    yTo,
-  ]);
+  }, [views, width, height, mode, theme, x.label, x.unit, x.log, xFrom, xTo, y.label, y.unit, y.log, yFrom, yTo]);
 
   useEffect(() => {
     drawn.current?.redraw(false, false);

@@ -11,10 +11,13 @@ import { env } from '@/server/env/env';
 import { forgetDoneJobs, releaseLeases, startWorker } from '@/server/jobs/service';
 import { sendDueMail } from '@/server/mail/service';
 import { serveCommands } from '@/server/commands/socket';
+import { settleTraces } from '@/server/traces/service';
 import { jobHandlers } from './handlers';
 
 const copyEveryMs = 6 * 3600_000;
 const tidyEveryMs = 3600_000;
+/** Bytes of journal after which a copy of the database is kept early, so that a replay stays short. */
+const longestJournal = 64e6;
 
 const holder = globalThis as typeof globalThis & { kelvinleafStarted?: boolean };
 
@@ -32,6 +35,8 @@ export async function startServer(): Promise<void> {
   }
   await releaseLeases();
   await firstContent();
+  // Files received before a crash are read now, beside the first requests.
+  settleTraces().catch((error) => report('settling traces', {}, error));
   const stopCommands = await serveCommands();
   const lastRun = { mail: 0, copy: Date.now() - copyEveryMs + 60_000, tidy: Date.now() };
   const worker = startWorker(jobHandlers, async () => {
@@ -44,9 +49,10 @@ export async function startServer(): Promise<void> {
       lastRun.tidy = now;
       await forgetOldTurns();
       await forgetDoneJobs();
+      await settleTraces();
       await opened.vacuum();
     }
-    if (now - lastRun.copy >= copyEveryMs) {
+    if (now - lastRun.copy >= copyEveryMs || opened.journalBytes() > longestJournal) {
       lastRun.copy = now;
       await opened.maintain();
     }

@@ -23,9 +23,12 @@ describe('every route', () => {
         expect(source).toContain(ownGuard[file]);
         return;
       }
-      const exported = [...source.matchAll(/export (?:const|async function|function) (\w+)/g)].map((match) => match[1]).filter((name) => methods.includes(name));
+      const exported = [...source.matchAll(/export (?:const|async function|function) (\w+)/g)]
+        .map((match) => match[1])
+        .filter((name) => methods.includes(name));
       expect(exported.length).toBeGreaterThan(0);
-      for (const method of exported) expect(source, method).toMatch(new RegExp(`export const ${method} = withAccess\\(`));
+      for (const method of exported)
+        expect(source, method).toMatch(new RegExp(`export const ${method} = withAccess\\(`));
       // A GET must not change anything: none of them takes a body.
       expect(source).not.toMatch(/export const GET = withAccess\(\{[^}]*body:/);
     });
@@ -34,7 +37,11 @@ describe('every route', () => {
 
 describe('every page', () => {
   const pages = files.filter((name) => name.endsWith('page.tsx'));
-  const addressOf = (file: string) => file.replace(/^app/, '').replace(/\/\([^)]*\)/g, '').replace(/\/page\.tsx$/, '') || '/';
+  const addressOf = (file: string) =>
+    file
+      .replace(/^app/, '')
+      .replace(/\/\([^)]*\)/g, '')
+      .replace(/\/page\.tsx$/, '') || '/';
 
   for (const file of pages.filter((name) => name.includes('(book)'))) {
     it(`${file} asks server/access first`, () => {
@@ -51,7 +58,10 @@ describe('every page', () => {
 describe('files', () => {
   const roots = ['app', 'components', 'lib', 'server', 'fakes'];
   const sources = roots.flatMap((root) =>
-    fs.readdirSync(root, { recursive: true, encoding: 'utf8' }).filter((file) => /\.(ts|tsx|mjs)$/.test(file) && !/\.test\.tsx?$/.test(file)).map((file) => path.join(root, file)),
+    fs
+      .readdirSync(root, { recursive: true, encoding: 'utf8' })
+      .filter((file) => /\.(ts|tsx|mjs)$/.test(file) && !/\.test\.tsx?$/.test(file))
+      .map((file) => path.join(root, file)),
   );
 
   it('stay short enough to have one subject', () => {

@@ -2,6 +2,7 @@ import { randomUUID } from 'node:crypto';
 import fs from 'node:fs/promises';
 import os from 'node:os';
 import path from 'node:path';
+import { Client } from 'pg';
 import type { NotebookRole } from '@/lib/schemas/person';
 import { POST as signInRoute } from '@/app/api/auth/sign-in/route';
 import { createAccount } from '@/server/accounts/service';
@@ -12,6 +13,8 @@ import { forgetEnv } from '@/server/env/env';
 import { insertNotebook } from '@/server/notebooks/service';
 
 export const origin = 'http://localhost:3999';
+/** Read once: each laboratory then sets its own database's address. */
+const serverUrl = process.env.DATABASE_URL;
 export const password = 'a long enough password';
 
 export type TestPerson = { id: string; name: string; email: string; cookie: string };
@@ -33,6 +36,7 @@ export type Answer<T = Record<string, unknown>> = { status: number; body: T; hea
  */
 export async function startLaboratory(environment: Record<string, string> = {}) {
   const dataDir = await fs.mkdtemp(path.join(os.tmpdir(), 'kelvinleaf-test-'));
+  if (serverUrl) process.env.DATABASE_URL = await freshDatabase(serverUrl);
   Object.assign(process.env, { DATA_DIR: dataDir, BASE_URL: origin, DEMO: 'off', ...environment });
   forgetEnv();
   const hash = await hashPassword(password);
@@ -82,6 +86,18 @@ export async function startLaboratory(environment: Record<string, string> = {}) 
       await fs.rm(dataDir, { recursive: true, force: true });
     },
   };
+}
+
+/** The same suite on a PostgreSQL server: a database of its own for each laboratory. */
+async function freshDatabase(url: string): Promise<string> {
+  const name = `kelvinleaf_test_${randomUUID().replaceAll('-', '')}`;
+  const client = new Client({ connectionString: url });
+  await client.connect();
+  await client.query(`CREATE DATABASE ${name}`);
+  await client.end();
+  const own = new URL(url);
+  own.pathname = `/${name}`;
+  return own.href;
 }
 
 export type Laboratory = Awaited<ReturnType<typeof startLaboratory>>;
