@@ -103,8 +103,15 @@ function Signatures({ entry }: { entry: EntryDto }) {
           <strong>{signature.printedName}</strong>,{' '}
           <time dateTime={signature.signedAt}>{signature.signedAt.slice(0, 19).replace('T', ' ')} UTC</time> (
           {signature.zone}): {signature.meaning}
-          {signature.lateReason ? ` Signed late: ${signature.lateReason}` : ''}{' '}
-          <span className="figures text-quiet">version {signature.versionDigest.slice(0, 8)}</span>
+          {signature.lateReason ? (
+            <>
+              {' '}
+              <strong className="text-attention">Late.</strong> {signature.lateReason}
+            </>
+          ) : null}{' '}
+          <span className="text-quiet">
+            version <span className="figures">{signature.versionDigest.slice(0, 8)}</span>, attested by the server
+          </span>
         </p>
       ))}
     </section>

@@ -1,11 +1,13 @@
 'use client';
 
 import Link from 'next/link';
+import useSWR from 'swr';
 import type { ReactNode } from 'react';
 import type { TraceNodeAttributes } from '@/lib/document/attributes';
 import type { BlockStamps, EntryDto } from '@/lib/schemas/entry';
 import { useResult, useSheet, useTrace, type Focus } from '@/components/editor/sheet-context/context';
 import { showBlock, type SheetText } from '@/components/entry/sheet-text';
+import { request } from '@/components/hooks/request';
 import { BlockProvenance } from './block-provenance';
 import { TraceProvenance } from './trace-provenance';
 import { ValueProvenance } from './value-provenance';
@@ -63,8 +65,19 @@ function OfTrace({ text, focus }: { text: SheetText; focus: Focus }) {
   return <TraceProvenance node={attributes} file={file} />;
 }
 
-function ToCountersign({ entry, onSign }: { entry: EntryDto; onSign?: () => void }) {
-  const waits = entry.state === 'signed' && (entry.may.countersign || entry.countersignObstacle !== null);
+/** Reads the entry again while it waits: what has been seen and asked changes under the reader's eyes. */
+function useStanding(entry: EntryDto, waits: boolean): EntryDto {
+  const { data } = useSWR(waits ? `/api/entries/${entry.id}` : null, (url: string) => request<EntryDto>('GET', url), {
+    fallbackData: entry,
+    revalidateOnMount: true,
+    refreshInterval: 4000,
+  });
+  return data ?? entry;
+}
+
+function ToCountersign({ entry: first, onSign }: { entry: EntryDto; onSign?: () => void }) {
+  const waits = first.state === 'signed' && (first.may.countersign || first.countersignObstacle !== null);
+  const entry = useStanding(first, waits);
   if (!waits && !entry.may.sign) return null;
   return (
     <section>
