@@ -1,7 +1,5 @@
 import { randomUUID, scryptSync } from 'node:crypto';
 import fs from 'node:fs/promises';
-import os from 'node:os';
-import path from 'node:path';
 import type { NotebookRole } from '@/lib/schemas/person';
 import { POST as signInRoute } from '@/app/api/auth/sign-in/route';
 import { createAccount } from '@/server/accounts/service';
@@ -9,6 +7,7 @@ import { closeDatabase, getDb } from '@/server/db/client';
 import { notebookMember } from '@/server/db/schema/notebooks';
 import { forgetEnv } from '@/server/env/env';
 import { insertNotebook } from '@/server/notebooks/service';
+import { temporaryFolder } from './temporary';
 
 export const origin = 'http://localhost:3999';
 export const password = 'a long enough password';
@@ -38,7 +37,7 @@ export type Answer<T = Record<string, unknown>> = { status: number; body: T; hea
  * and an administrator. Call `close()` at the end.
  */
 export async function startLaboratory(environment: Record<string, string> = {}) {
-  const dataDir = await fs.mkdtemp(path.join(os.tmpdir(), 'kelvinleaf-test-'));
+  const dataDir = await temporaryFolder('test');
   Object.assign(process.env, { DATA_DIR: dataDir, BASE_URL: origin, DEMO: 'off', ...environment });
   forgetEnv();
   const hash = cheapHash();
