@@ -19,10 +19,7 @@ export const personNameSchema = z
       .string()
       .min(2, 'Give the full name, as it is to be printed with a signature.')
       .max(120, 'A name has at most 120 characters.')
-      .refine(
-        (name) => !invisible.test(name),
-        'The name has invisible or direction-changing characters; type it anew.',
-      )
+      .refine((name) => !invisible.test(name), 'The name has invisible or direction-changing characters; type it anew.')
       .refine(
         (name) => !mixedAlphabets(name),
         'A word of the name mixes two alphabets, so that it can look like another name; type it in one.',

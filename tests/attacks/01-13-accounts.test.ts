@@ -18,7 +18,15 @@ import { checkPassword, hashPassword } from '@/server/auth/password';
 import { mailMessage, rateCount, securityEvent } from '@/server/db/schema/housekeeping';
 import { account, session, user, verification } from '@/server/db/schema/people';
 import { forgetEnv } from '@/server/env/env';
-import { call, cheapHash, origin, password, startLaboratory, type Laboratory, type TestPerson } from '../integration/harness';
+import {
+  call,
+  cheapHash,
+  origin,
+  password,
+  startLaboratory,
+  type Laboratory,
+  type TestPerson,
+} from '../integration/harness';
 import * as life from '../integration/life';
 import { keyOf, totp } from '../integration/totp';
 
@@ -41,8 +49,7 @@ const asCookie = (person: TestPerson, cookie: string): TestPerson => ({ ...perso
 const opens = async (person: TestPerson) => (await call(notebooksRoute, { as: person })).status;
 const forgotten = (email: string, headers: Record<string, string> = {}) =>
   call<{ sentence: string }>(forgottenRoute, { body: { email }, headers });
-const reset = (token: string, word: string) =>
-  call<life.Refusal>(resetRoute, { body: { token, password: word } });
+const reset = (token: string, word: string) => call<life.Refusal>(resetRoute, { body: { token, password: word } });
 
 async function resetLink(email: string): Promise<string> {
   const [mail] = await lab.db
@@ -144,10 +151,7 @@ describe('sign-in', () => {
     const unknown = await timed('nobody@laboratory.example');
     expect([unknown.status, unknown.body]).toEqual([known.status, known.body]);
     for (const answer of [known, unknown]) expect(answer.ms).toBeGreaterThan(450);
-    const mails = await lab.db
-      .select()
-      .from(mailMessage)
-      .where(eq(mailMessage.recipient, 'nobody@laboratory.example'));
+    const mails = await lab.db.select().from(mailMessage).where(eq(mailMessage.recipient, 'nobody@laboratory.example'));
     expect(mails).toEqual([]);
   });
 
@@ -338,7 +342,9 @@ describe('limits and forms', () => {
     expect(await checkPassword({ hash, password: `${long}b` })).toBe(false);
     expect(await checkPassword({ hash, password: long })).toBe(false);
     const unicode = await hashPassword('Ångström·über·µ·🧊\u0000after');
-    expect(await checkPassword({ hash: unicode, password: 'Ångström·über·µ·🧊\u0000after'.normalize('NFD') })).toBe(true);
+    expect(await checkPassword({ hash: unicode, password: 'Ångström·über·µ·🧊\u0000after'.normalize('NFD') })).toBe(
+      true,
+    );
     expect(await checkPassword({ hash: unicode, password: 'Ångström·über·µ·🧊\u0000other' })).toBe(false);
     expect(await checkPassword({ hash: unicode, password: 'Ångström·über·µ·🧊' })).toBe(false);
     expect(passwordSchema.safeParse('x'.repeat(128)).success).toBe(true);

@@ -266,7 +266,10 @@ it('29 a revoked token opens nothing, and nobody revokes another’s', async () 
   await call(revokeRoute, { as: author, method: 'DELETE', params: { tokenId: made.id } });
   expect(await use()).toBe(401);
   for (const scheme of ['bearer', 'Basic', 'Bearer  ', 'Token']) {
-    const answer = await call(getEntry, { params: { id: mine }, headers: { authorization: `${scheme} ${made.secret}` } });
+    const answer = await call(getEntry, {
+      params: { id: mine },
+      headers: { authorization: `${scheme} ${made.secret}` },
+    });
     expect(answer.status).toBe(401);
   }
 });
@@ -316,4 +319,3 @@ it('30 an upload’s id means nothing to anybody but who sent it', async () => {
   expect((await call(uploadRoute, { as: second, params: { id: mine, uploadId } })).status).toBe(404);
   expect((await call(uploadRoute, { as: author, params: { id: mine, uploadId } })).status).toBe(200);
 });
-

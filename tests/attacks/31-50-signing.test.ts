@@ -32,8 +32,7 @@ beforeAll(async () => {
 afterAll(() => lab.close());
 beforeEach(() => life.forgetTurns(lab));
 
-const countOf = async (id: string) =>
-  (await lab.db.select().from(signature).where(eq(signature.entryId, id))).length;
+const countOf = async (id: string) => (await lab.db.select().from(signature).where(eq(signature.entryId, id))).length;
 
 /** A draft of the author with one version. */
 async function cutEntry(text = 'Text of the version.') {
@@ -223,9 +222,7 @@ it('41 two witnesses at once leave one countersignature', async () => {
     [witness, lead, second].map(async (as) => [as, await life.challenge(as, id, digest, 'countersign')] as const),
   );
   const answers = await Promise.all(
-    steps.map(([as, step]) =>
-      call(countersignRoute, { as, params: { id }, body: life.signBody(step, digest) }),
-    ),
+    steps.map(([as, step]) => call(countersignRoute, { as, params: { id }, body: life.signBody(step, digest) })),
   );
   expect(answers.map((answer) => answer.status).sort()).toEqual([200, 409, 409]);
   expect(await countOf(id)).toBe(2);
@@ -321,14 +318,21 @@ it('46 a personal token never signs or countersigns, even with the password', as
 });
 
 it('50 names with invisible or direction-changing characters cannot be taken, and half a surrogate is refused', async () => {
-  for (const name of ['Wilma\u202eesseN', 'Wil\u200bma Nesse', 'Wilma\u2066 Nesse', 'Wilma\u00ad Nesse', 'Wil\u0000ma']) {
+  for (const name of [
+    'Wilma\u202eesseN',
+    'Wil\u200bma Nesse',
+    'Wilma\u2066 Nesse',
+    'Wilma\u00ad Nesse',
+    'Wil\u0000ma',
+  ]) {
     expect([JSON.stringify(name), personNameSchema.safeParse(name).success]).toEqual([JSON.stringify(name), false]);
   }
   expect(personNameSchema.parse('Jose\u0301 Ruiz')).toBe('José Ruiz');
   // A Cyrillic letter in a Latin word: another person's name to the eye.
   expect(personNameSchema.safeParse('W\u0456lma Nesse').success).toBe(false);
   expect(personNameSchema.safeParse('\u0391ron Thorne').success).toBe(false);
-  for (const name of ['Ольга Мартин', 'Μαρία Λ', 'Bjørn Ångström', '山田 太郎']) expect(personNameSchema.parse(name)).toBe(name);
+  for (const name of ['Ольга Мартин', 'Μαρία Λ', 'Bjørn Ångström', '山田 太郎'])
+    expect(personNameSchema.parse(name)).toBe(name);
   const { witness, author } = lab.people;
   const { id, digest } = await signedEntry();
   const question = { versionDigest: digest, blockId: null, quote: '', text: 'half \ud800' };

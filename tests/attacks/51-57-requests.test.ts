@@ -56,7 +56,13 @@ describe('where a change comes from', () => {
       await refused({ origin: lookalike });
   });
   it('54 JSON sent as text, as a form or without a type is not read', async () => {
-    for (const type of ['text/plain', 'application/x-www-form-urlencoded', 'multipart/form-data; boundary=x', null, 'text/plain; application/json']) {
+    for (const type of [
+      'text/plain',
+      'application/x-www-form-urlencoded',
+      'multipart/form-data; boundary=x',
+      null,
+      'text/plain; application/json',
+    ]) {
       const answer = await found({ 'content-type': type });
       expect([type, answer.status]).toEqual([type, 415]);
     }
@@ -90,9 +96,16 @@ it('56 no GET changes anything: the record, its log and every draft stay as they
   const snapshot = async () =>
     JSON.stringify(
       await Promise.all(
-        ['entry', 'entry_draft', 'entry_version', 'signature', 'log_record', 'notebook', 'notebook_member', 'question'].map(
-          async (table) => (await lab.db.execute(`SELECT * FROM ${table} ORDER BY 1, 2`)).rows,
-        ),
+        [
+          'entry',
+          'entry_draft',
+          'entry_version',
+          'signature',
+          'log_record',
+          'notebook',
+          'notebook_member',
+          'question',
+        ].map(async (table) => (await lab.db.execute(`SELECT * FROM ${table} ORDER BY 1, 2`)).rows),
       ),
     );
   const before = await snapshot();
@@ -139,7 +152,7 @@ it('98 SQL in ids, queries, filters and the full text is words, never a command'
     '%',
     '_',
     '\0',
-    "$$ || pg_sleep(5) || $$",
+    '$$ || pg_sleep(5) || $$',
     `${'a '.repeat(90)}`,
     '🧊 µ Ω',
     "!!'",
@@ -159,7 +172,7 @@ it('98 SQL in ids, queries, filters and the full text is words, never a command'
   expect(hit.body.results.map((r) => r.title)).toEqual(['Escape over the exit barrier']);
   for (const params of [{ id: "x' OR '1'='1" }, { id: `${id}'--` }]) {
     expect((await call(getEntry, { as: author, params })).status).toBe(404);
-    expect((await call(rowsRoute, { as: author, params, url: "/r?from=0;DROP TABLE trace&count=1" })).status).toBe(404);
+    expect((await call(rowsRoute, { as: author, params, url: '/r?from=0;DROP TABLE trace&count=1' })).status).toBe(404);
   }
   expect((await call(getEntry, { as: author, params: { id } })).status).toBe(200);
 });
@@ -183,7 +196,11 @@ describe('what is written about trouble', () => {
 
   it('104 line breaks and terminal codes from a stranger make no line and no colour of their own', () => {
     const lines = capture();
-    report('failed\r\n{"event":"forged"}', { subject: 'a\nb\u001b[31mred\u009b31m\u2028\u0007\u007f' }, new Error('x\r\ny'));
+    report(
+      'failed\r\n{"event":"forged"}',
+      { subject: 'a\nb\u001b[31mred\u009b31m\u2028\u0007\u007f' },
+      new Error('x\r\ny'),
+    );
     expect(lines).toHaveLength(1);
     expect(lines[0].endsWith('}\n')).toBe(true);
     const body = lines[0].slice(0, -1);
@@ -204,7 +221,15 @@ describe('what is written about trouble', () => {
     report('x', { password: 'my secret password', token: 't-secret', cookie: author.cookie, sessionToken: 's-secret' });
     const all = lines.join('');
     expect(all).toContain('request failed');
-    for (const secret of ['my secret password', 'secret text', 'my-secret-token', 't-secret', 's-secret', 'hidden-in-query', author.cookie.split('=')[1]])
+    for (const secret of [
+      'my secret password',
+      'secret text',
+      'my-secret-token',
+      't-secret',
+      's-secret',
+      'hidden-in-query',
+      author.cookie.split('=')[1],
+    ])
       expect(all).not.toContain(secret);
     // Nor does the reset link, which is as good as a password.
     expect(all).not.toContain('/reset?token=');

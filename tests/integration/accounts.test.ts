@@ -70,7 +70,10 @@ describe('an invitation', () => {
 
   it('does not work when expired, withdrawn, replaced by a newer one, or guessed', async () => {
     const expired = await invited('late@laboratory.example');
-    await lab.db.update(invitation).set({ expiresAt: new Date(Date.now() - 1 ) }).where(eq(invitation.id, expired.id));
+    await lab.db
+      .update(invitation)
+      .set({ expiresAt: new Date(Date.now() - 1) })
+      .where(eq(invitation.id, expired.id));
     const withdrawn = await invited('withdrawn@laboratory.example');
     await call(withdrawRoute, {
       as: lab.people.administrator,
@@ -127,9 +130,9 @@ describe('the second factor', () => {
     expect(new Set(begun.body.recoveryCodes).size).toBe(10);
     const key = keyOf(begun.body.uri);
     // Until a code has proven that the key arrived, nothing is asked for.
-    expect((await call<{ secondFactor: boolean }>(signInRoute, { body: { email: person.email, password } })).body).toEqual(
-      { secondFactor: false },
-    );
+    expect(
+      (await call<{ secondFactor: boolean }>(signInRoute, { body: { email: person.email, password } })).body,
+    ).toEqual({ secondFactor: false });
     const bad = String((Number(totp(key, Date.now() / 1000)) + 1) % 1e6).padStart(6, '0');
     expect((await call(confirmFactor, { as: person, method: 'PUT', body: { code: bad } })).status).toBe(422);
     const code = totp(key, Date.now() / 1000);
@@ -180,8 +183,7 @@ describe('sessions', () => {
     const person = await findPerson(new Headers({ cookie: author.cookie }));
     const lines = await listSessions(person!);
     const theirs = lines.find((line) => !line.current);
-    const end = (as: TestPerson) =>
-      call(endSessionRoute, { as, method: 'DELETE', params: { sessionId: theirs!.id } });
+    const end = (as: TestPerson) => call(endSessionRoute, { as, method: 'DELETE', params: { sessionId: theirs!.id } });
     await end(outsider);
     expect((await call(notebooksRoute, { as: other })).status).toBe(200);
     await end(author);

@@ -57,7 +57,9 @@ it('`token` runs inside the server that holds the database and prints one token,
 });
 
 it('an unknown person, an unknown command and a broken request are refused with a sentence', async () => {
-  const unknown = await run('token', 'nobody@laboratory.example').catch((error: { code: number; stderr: string }) => error);
+  const unknown = await run('token', 'nobody@laboratory.example').catch(
+    (error: { code: number; stderr: string }) => error,
+  );
   expect(unknown).toMatchObject({ code: 1, stderr: expect.stringContaining('Nobody with the address') });
   expect(await send(JSON.stringify({ name: 'constructor', args: [] }))).toEqual({
     ok: false,

@@ -137,8 +137,7 @@ export async function newPerson(laboratory: Laboratory, name: string, role: Note
   const id = await laboratory.db.transaction((tx) =>
     createAccount(tx, { email, name, role: 'member', passwordHash, actorId: null }),
   );
-  if (role)
-    await laboratory.db.insert(notebookMember).values({ notebookId: laboratory.notebookId, userId: id, role });
+  if (role) await laboratory.db.insert(notebookMember).values({ notebookId: laboratory.notebookId, userId: id, role });
   return { id, name, email, cookie: await signIn(email) };
 }
 

@@ -142,7 +142,10 @@ it('nothing that a person does waits for a mail server that never answers', asyn
 });
 
 it('an address with a line break is refused and adds no recipient; a subject loses it', async () => {
-  for (const to of ['a@laboratory.example\r\nBcc: evil@evil.example', 'a@laboratory.example\nRCPT TO:<evil@evil.example>']) {
+  for (const to of [
+    'a@laboratory.example\r\nBcc: evil@evil.example',
+    'a@laboratory.example\nRCPT TO:<evil@evil.example>',
+  ]) {
     await expect(queueMail(lab.db, { to, subject: 'x', lines: ['x'] })).rejects.toThrow();
     const refused = await call(inviteRoute, {
       as: lab.people.administrator,

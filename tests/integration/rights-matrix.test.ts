@@ -159,7 +159,16 @@ beforeAll(async () => {
   lab = await startLaboratory();
   const { lead, author, second, witness, reader, outsider, administrator } = lab.people;
   const contributor = await life.newPerson(lab, 'Cora Mitt', 'author');
-  Object.assign(person, { lead, own: author, 'other author': second, contributor, witness, reader, outsider, administrator });
+  Object.assign(person, {
+    lead,
+    own: author,
+    'other author': second,
+    contributor,
+    witness,
+    reader,
+    outsider,
+    administrator,
+  });
   const made = await makeToken(author.id, 'kept');
   const revoked = await makeToken(author.id, 'revoked');
   const owner = await findPerson(new Headers({ cookie: author.cookie }));
@@ -196,7 +205,9 @@ beforeAll(async () => {
   cooldownId = randomUUID();
   const place = { notebookId: lab.notebookId, createdBy: author.id };
   await lab.db.insert(device).values({ id: deviceId, name: 'GA1', ...place });
-  await lab.db.insert(cooldown).values({ id: cooldownId, name: 'Tern 1', cryostat: 'Tern', startedOn: '2031-01-01', ...place });
+  await lab.db
+    .insert(cooldown)
+    .values({ id: cooldownId, name: 'Tern 1', cryostat: 'Tern', startedOn: '2031-01-01', ...place });
 });
 afterAll(() => lab.close());
 
@@ -219,7 +230,8 @@ async function outcome(route: string, caller: Caller, params: Record<string, str
   if (code === 'not_allowed') return 'not allowed';
   if (code === 'not_found' && answer.body.error?.message.startsWith('There is nothing here')) return 'nothing here';
   // What an allowed call with an empty body comes to: an answer, or a word about the body or the thing named in the path.
-  if (answer.status === 200 || ['invalid', 'wrong_type', 'not_found', 'conflict'].includes(code ?? '')) return 'allowed';
+  if (answer.status === 200 || ['invalid', 'wrong_type', 'not_found', 'conflict'].includes(code ?? ''))
+    return 'allowed';
   return `${answer.status} ${code}`;
 }
 

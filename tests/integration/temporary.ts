@@ -8,4 +8,5 @@ import path from 'node:path';
 const folder = existsSync('/dev/shm') ? '/dev/shm' : os.tmpdir();
 
 /** A new folder for a test's data; whoever makes it removes it. */
-export const temporaryFolder = (purpose: string): Promise<string> => fs.mkdtemp(path.join(folder, `kelvinleaf-${purpose}-`));
+export const temporaryFolder = (purpose: string): Promise<string> =>
+  fs.mkdtemp(path.join(folder, `kelvinleaf-${purpose}-`));
