@@ -2,5 +2,11 @@
 export async function register(): Promise<void> {
   if (process.env.NEXT_RUNTIME !== 'nodejs') return;
   const { startServer } = await import('./server/start/service');
-  await startServer();
+  try {
+    await startServer();
+  } catch (error) {
+    // Nothing can be served without the data; one sentence says why, and the process ends instead of lingering.
+    process.stderr.write(`${error instanceof Error ? error.message : String(error)}\n`);
+    process.exit(1);
+  }
 }

@@ -1,5 +1,5 @@
 import type { DraftPorts, SaveReply, Sending } from '@/lib/draft/contract';
-import { clockTime } from '@/lib/document/nodes/log-line';
+import { clockTime } from '@/lib/document/clock-time';
 import { AppError } from '@/lib/errors/app-error';
 import type { DraftDto } from '@/lib/schemas/entry';
 import { refusalIn } from '@/components/hooks/request';
@@ -10,12 +10,12 @@ type Owner = { personId: string; entryId: string; windowId: string };
 /** Browsers give a request that outlives its page 64 kB at most (Fetch Standard, "keepalive"). */
 const longestLeaving = 60_000;
 
-async function putDraft(entryId: string, sending: Sending, leaving: boolean): Promise<SaveReply> {
+async function putDraft({ entryId, personId }: Owner, sending: Sending, leaving: boolean): Promise<SaveReply> {
   const body = JSON.stringify(sending);
   const response = await fetch(`/api/entries/${encodeURIComponent(entryId)}/draft`, {
     method: 'PUT',
     credentials: 'same-origin',
-    headers: { 'content-type': 'application/json' },
+    headers: { 'content-type': 'application/json', 'x-kelvinleaf-writer': personId },
     body,
     keepalive: leaving && new Blob([body]).size < longestLeaving,
   });
@@ -38,7 +38,7 @@ async function putDraft(entryId: string, sending: Sending, leaving: boolean): Pr
 /** The saver's world in a browser. */
 export function browserPorts(owner: Owner, clockOffsetMs: () => number): DraftPorts {
   return {
-    send: (body, leaving) => putDraft(owner.entryId, body, leaving),
+    send: (body, leaving) => putDraft(owner, body, leaving),
     keep: (draft) => keepDraft({ ...draft, ...owner }),
     forget: () => forgetDraft(owner.personId, owner.entryId, owner.windowId),
     now: () => new Date(),

@@ -1,6 +1,7 @@
 'use client';
 
 import { useState } from 'react';
+import { clockTime } from '@/lib/document/clock-time';
 import { ActionForm } from '@/components/ui/action-form';
 import { Choice, Field } from '@/components/ui/field';
 
@@ -30,6 +31,7 @@ export function NewEntryForm({ code, cooldowns, devices, layouts }: Props) {
         deviceIds: form.getAll('device'),
         layout: form.get('layout'),
         requestKey,
+        writtenAt: clockTime(new Date()),
       })}
       done={(answer) => ({ go: `/entries/${String(answer.id)}` })}
     >

@@ -3,7 +3,7 @@
 import { useEffect, useId, useState } from 'react';
 import { ErrorSentence } from '@/components/ui/sentence';
 import { symbolSchema, type Span } from '@/lib/document/attributes';
-import { axisLabel, sampleText } from '@/lib/plot/axis';
+import { axisLabel } from '@/lib/plot/axis';
 
 type Props = {
   spans: Span[];
@@ -23,6 +23,9 @@ export function withInterval(spans: Span[], name: string, axis: string, interval
     span.name === name ? { ...span, intervals: [...span.intervals, sorted].sort((a, b) => a[0] - b[0]) } : span,
   );
 }
+
+/** An end as somebody would write it: no zeros that nobody measured. */
+const endText = (end: number) => String(Number(end.toPrecision(6))).replace('-', '−');
 
 function readNumber(text: string): number | null {
   const value = Number(text.trim().replace(',', '.').replace('−', '-'));
@@ -99,7 +102,7 @@ export function SpanEditor({ spans, axis, unit, proposed, onSpans, onDone }: Pro
               <li key={`${span.name} ${i}`} className="flex flex-wrap items-center gap-2">
                 <strong className="figures">{span.name}</strong>
                 <span className="figures">
-                  {sampleText(low)} to {sampleText(high)}
+                  {endText(low)} to {endText(high)}
                   {span.axis === axis ? (unit ? ` ${unit}` : '') : ` of ${span.axis}`}
                 </span>
                 <button
@@ -118,7 +121,7 @@ export function SpanEditor({ spans, axis, unit, proposed, onSpans, onDone }: Pro
                   remove
                   <span className="sr-only">
                     {' '}
-                    the interval {sampleText(low)} to {sampleText(high)} of {span.name}
+                    the interval {endText(low)} to {endText(high)} of {span.name}
                   </span>
                 </button>
               </li>

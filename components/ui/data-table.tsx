@@ -56,7 +56,7 @@ export function DataTable<Row>({ caption, rows, columns, rowKey, empty, fileName
   if (rows.length === 0) return <p className="py-4 text-quiet">{empty}</p>;
   return (
     <div>
-      <div className="my-3 flex flex-wrap items-end gap-3">
+      <div className="relative my-3 flex flex-wrap items-end gap-3">
         <label className="grow sm:max-w-xs">
           <span className="text-sm text-quiet">Filter</span>
           <input
@@ -66,9 +66,9 @@ export function DataTable<Row>({ caption, rows, columns, rowKey, empty, fileName
             onChange={(event) => setState({ ...state, filter: event.target.value })}
           />
         </label>
-        <details className="relative">
+        <details className="sm:relative">
           <summary className="press cursor-pointer list-none">Columns</summary>
-          <fieldset className="absolute z-10 mt-1 min-w-40 border border-edge bg-sheet p-3">
+          <fieldset className="absolute inset-x-0 z-10 mt-1 min-w-40 border sm:inset-x-auto border-edge bg-sheet p-3">
             <legend className="sr-only">Columns to show</legend>
             {columns.map((column) => (
               <label key={column.key} className="flex min-h-7 items-center gap-2">

@@ -21,6 +21,8 @@ export type OpenDatabase = {
   report: StartReport;
   /** Flush, and keep a copy the journal can go on from; nothing to do on a PostgreSQL server. */
   maintain: () => Promise<void>;
+  /** Bytes of journal since the last copy. */
+  journalBytes: () => number;
   vacuum: () => Promise<void>;
   close: () => Promise<void>;
 };
@@ -70,6 +72,7 @@ async function openServer(url: string): Promise<OpenDatabase> {
     db: db as unknown as Db,
     report: { replayed: 0, restoredCopy: null, reason: null },
     maintain: async () => {},
+    journalBytes: () => 0,
     vacuum: async () => {},
     close: () => pool.end(),
   };
@@ -98,6 +101,7 @@ function localDatabase(pg: JournaledPGlite, dataDir: string, report: StartReport
     maintain: async () => {
       await keepCopy(pg, dataDir);
     },
+    journalBytes: () => pg.journal?.bytes ?? 0,
     vacuum: async () => {
       await pg.exec('VACUUM ANALYZE');
     },

@@ -33,6 +33,7 @@ export class Journal {
     private readonly folder: string,
     private handle: fs.FileHandle,
     private next: number,
+    private size: number,
   ) {}
 
   static async open(folder: string): Promise<Journal> {
@@ -41,18 +42,19 @@ export class Journal {
     const segments = await listSegments(folder);
     let next = 1;
     let name = segmentName(1);
+    let size = 0;
     if (segments.length > 0) {
       name = segments[segments.length - 1];
       next = Number.parseInt(name, 10);
       const file = path.join(folder, name);
       const { records, goodBytes } = await readSegment(file, true);
-      const size = (await fs.stat(file)).size;
-      if (goodBytes < size) await fs.truncate(file, goodBytes);
+      if (goodBytes < (await fs.stat(file)).size) await fs.truncate(file, goodBytes);
+      size = goodBytes;
       for (const record of records) next = Math.max(next, record.seq + 1);
     }
     const handle = await fs.open(path.join(folder, name), 'a', 0o600);
     await syncFolder(folder);
-    return new Journal(folder, handle, next);
+    return new Journal(folder, handle, next, size);
   }
 
   /** Sequence number of the newest record, 0 when there is none. */
@@ -81,8 +83,21 @@ export class Journal {
   }
 
   private async write(record: JournalRecord): Promise<void> {
-    await this.handle.appendFile(toLine(record));
-    await this.handle.datasync();
+    const line = Buffer.from(toLine(record));
+    try {
+      await this.handle.appendFile(line);
+      await this.handle.datasync();
+      this.size += line.byteLength;
+    } catch (error) {
+      // A full disk may have taken half a line; what follows it must not be lost behind it.
+      await this.handle.truncate(this.size);
+      throw error;
+    }
+  }
+
+  /** Bytes of the segment being written: when it grows long, it is time for a copy of the database. */
+  get bytes(): number {
+    return this.size;
   }
 
   /** Records after `seq` that took effect, in order. Throws a sentence when the journal no longer reaches back that far. */
@@ -112,6 +127,7 @@ export class Journal {
   async rotate(): Promise<void> {
     await this.handle.close();
     this.handle = await fs.open(path.join(this.folder, segmentName(this.next)), 'a', 0o600);
+    this.size = 0;
     await syncFolder(this.folder);
   }
 

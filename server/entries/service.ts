@@ -3,6 +3,7 @@ import { now } from '@/server/clock/service';
 import { randomUUID } from 'node:crypto';
 import { and, desc, eq, inArray, sql } from 'drizzle-orm';
 import { z } from 'zod';
+import { clockTimeSchema } from '@/lib/document/attributes';
 import { documentText } from '@/lib/document/text';
 import type { DocumentJson } from '@/lib/document/json';
 import { AppError } from '@/lib/errors/app-error';
@@ -38,6 +39,8 @@ export const newEntrySchema = z
     /** `cooldown-day`, `empty`, or the id of a saved layout of this notebook. */
     layout: z.string().max(60),
     requestKey: z.uuid(),
+    /** The writer's clock, with its zone: the time that the layout's blocks carry. The server's own where left out. */
+    writtenAt: clockTimeSchema.optional(),
   })
   .strict();
 
@@ -68,6 +71,7 @@ export async function createEntry(
       doc,
       requestKey: input.requestKey,
       at: now(),
+      writtenAt: input.writtenAt,
     });
   });
 }
@@ -82,6 +86,7 @@ export type NewEntry = {
   doc: DocumentJson;
   requestKey: string | null;
   at: Date;
+  writtenAt?: string;
 };
 
 /** Takes the next leaf and stores entry, draft and log record. */
@@ -104,8 +109,10 @@ export async function insertEntry(tx: Tx, input: NewEntry): Promise<{ id: string
   });
   if (input.deviceIds.length > 0)
     await tx.insert(entryDevice).values(input.deviceIds.map((deviceId) => ({ entryId: id, deviceId })));
-  const stamps = nextStamps({}, input.doc.content ?? [], {
-    written: {},
+  const { writtenAt } = input;
+  const blocks = input.doc.content ?? [];
+  const stamps = nextStamps({}, blocks, {
+    written: writtenAt ? Object.fromEntries(blocks.map((block) => [String(block.attrs?.id), writtenAt])) : {},
     clockOffsetMs: 0,
     by: input.authorId,
     received: input.at,

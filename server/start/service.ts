@@ -16,6 +16,8 @@ import { jobHandlers } from './handlers';
 
 const copyEveryMs = 6 * 3600_000;
 const tidyEveryMs = 3600_000;
+/** Bytes of journal after which a copy of the database is kept early, so that a replay stays short. */
+const longestJournal = 64e6;
 
 const holder = globalThis as typeof globalThis & { kelvinleafStarted?: boolean };
 
@@ -50,7 +52,7 @@ export async function startServer(): Promise<void> {
       await settleTraces();
       await opened.vacuum();
     }
-    if (now - lastRun.copy >= copyEveryMs) {
+    if (now - lastRun.copy >= copyEveryMs || opened.journalBytes() > longestJournal) {
       lastRun.copy = now;
       await opened.maintain();
     }

@@ -76,7 +76,15 @@ let traceId: string;
 beforeAll(async () => {
   dataDir = await temporaryFolder('http');
   server = spawn(process.execPath, ['server/commands/start.mjs'], {
-    env: { ...process.env, PORT: String(port), BASE_URL: base, DATA_DIR: dataDir, DEMO: 'on', NODE_ENV: 'production' },
+    env: {
+      ...process.env,
+      PORT: String(port),
+      BASE_URL: base,
+      DATA_DIR: dataDir,
+      DEMO: 'on',
+      DATABASE_URL: '',
+      NODE_ENV: 'production',
+    },
     stdio: ['ignore', 'pipe', 'pipe'],
   });
   for (const stream of [server.stdout, server.stderr]) stream?.on('data', (chunk) => (output += String(chunk)));
@@ -275,11 +283,12 @@ it('3 a planted cookie is not taken over by a sign-in', async () => {
 
 it('22 a method named beside the real one is not taken, HEAD is no way round, and others are refused', async () => {
   const before = (await send('GET', `/api/entries/${draftId}`, { cookie: tomas })).body;
-  for (const headers of [
+  const overrides: Record<string, string>[] = [
     { 'x-http-method-override': 'DELETE' },
     { 'x-method-override': 'PUT' },
     { 'x-http-method': 'PATCH' },
-  ]) {
+  ];
+  for (const headers of overrides) {
     const over = await send('GET', `/api/entries/${draftId}?_method=PUT`, { cookie: tomas, ...headers });
     expect(over.status).toBe(200);
     expect((await write('POST', `/api/entries/${draftId}`, {}, { cookie: tomas, ...headers })).status).toBe(405);
@@ -368,6 +377,44 @@ describe('60 the content security policy', () => {
   });
 });
 
+it('72, 73 names and titles that are markup are shown as text, in the page and in the state sent with it', async () => {
+  const markup = '</script><script>window.broken=1</script><img src=x onerror=alert(1)>';
+  const made = await write(
+    'POST',
+    '/api/notebooks/NB-03/entries',
+    {
+      title: markup,
+      workDate: '2026-11-20',
+      cooldownId: null,
+      deviceIds: [],
+      layout: 'empty',
+      requestKey: randomUUID(),
+    },
+    { cookie: tomas },
+  );
+  const { id } = JSON.parse(made.body) as { id: string };
+  const device = { lot: '', wafer: '', die: '', material: '<b>GaAs</b>', dimensions: '', remarks: markup, gates: [] };
+  const named = { name: '<img src=x onerror=alert(1)>', ...device };
+  const kept = await write('POST', '/api/notebooks/NB-03/devices', named, { cookie: tomas });
+  expect([made.status, kept.status]).toEqual([200, 200]);
+  for (const target of [`/entries/${id}`, '/notebooks/NB-03', '/', '/devices', `/entries/${id}/versions`]) {
+    const reply = await send('GET', target, { cookie: tomas });
+    expect([target, reply.status]).toEqual([target, 200]);
+    expect([target, reply.body.includes('<script>window.broken'), /<img src=x/.test(reply.body)]).toEqual([
+      target,
+      false,
+      false,
+    ]);
+    expect(reply.body).not.toContain('<b>GaAs</b>');
+  }
+  const [list, devices] = [
+    await send('GET', '/notebooks/NB-03', { cookie: tomas }),
+    await send('GET', '/devices', { cookie: tomas }),
+  ];
+  expect(list.body).toContain('&lt;img src=x');
+  expect(devices.body).toContain('&lt;img src=x');
+});
+
 it('106 no page of an error carries a stack or a path of the server', async () => {
   for (const target of ['/nothing-here', '/%E0%A4%A', '/entries/%00', '/api/nothing-here', '/api/find?q=%E0%A4%A']) {
     const reply = await send('GET', target, { cookie: tomas });
@@ -418,7 +465,7 @@ it('21 SIGTERM: what was let in is answered and kept, nothing new is let in, and
   expect(exited.code).toBe(0);
   // Closed in order: no trace of a crash, and the save is in the database.
   expect(fs.existsSync(path.join(dataDir, 'running.json'))).toBe(false);
-  Object.assign(process.env, { DATA_DIR: dataDir, BASE_URL: base });
+  Object.assign(process.env, { DATA_DIR: dataDir, BASE_URL: base, DATABASE_URL: '' });
   forgetEnv();
   const { db, report } = await openDatabase();
   expect(report).toEqual({ replayed: 0, restoredCopy: null, reason: null });

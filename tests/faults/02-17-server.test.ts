@@ -22,7 +22,7 @@ import * as life from '../integration/life';
 let lab: Laboratory;
 beforeAll(async () => {
   await buildWorkers();
-  lab = await startLaboratory();
+  lab = await startLaboratory({ DATABASE_URL: '' });
 });
 afterAll(() => lab.close());
 beforeEach(() => life.forgetTurns(lab));

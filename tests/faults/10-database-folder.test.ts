@@ -18,7 +18,7 @@ let base: string;
 let count = 0;
 
 async function open(dataDir: string) {
-  Object.assign(process.env, { DATA_DIR: dataDir, DEMO: 'off', BASE_URL: 'http://localhost:3999' });
+  Object.assign(process.env, { DATA_DIR: dataDir, DEMO: 'off', DATABASE_URL: '', BASE_URL: 'http://localhost:3999' });
   forgetEnv();
   return openDatabase();
 }

@@ -1,5 +1,6 @@
 import { randomUUID, scryptSync } from 'node:crypto';
 import fs from 'node:fs/promises';
+import { Client } from 'pg';
 import type { NotebookRole } from '@/lib/schemas/person';
 import { POST as signInRoute } from '@/app/api/auth/sign-in/route';
 import { createAccount } from '@/server/accounts/service';
@@ -10,6 +11,8 @@ import { insertNotebook } from '@/server/notebooks/service';
 import { temporaryFolder } from './temporary';
 
 export const origin = 'http://localhost:3999';
+/** Read once: each laboratory then sets its own database's address. */
+const serverUrl = process.env.DATABASE_URL;
 export const password = 'a long enough password';
 
 /** The stored form of `password` at a 96th of the usual cost, so that a suite full of sign-ins stays quick; the check reads the cost from it. */
@@ -38,6 +41,7 @@ export type Answer<T = Record<string, unknown>> = { status: number; body: T; hea
  */
 export async function startLaboratory(environment: Record<string, string> = {}) {
   const dataDir = await temporaryFolder('test');
+  if (serverUrl) process.env.DATABASE_URL = await freshDatabase(serverUrl);
   Object.assign(process.env, { DATA_DIR: dataDir, BASE_URL: origin, DEMO: 'off', ...environment });
   forgetEnv();
   const hash = cheapHash();
@@ -87,6 +91,18 @@ export async function startLaboratory(environment: Record<string, string> = {}) 
       await fs.rm(dataDir, { recursive: true, force: true });
     },
   };
+}
+
+/** The same suite on a PostgreSQL server: a database of its own for each laboratory. */
+async function freshDatabase(url: string): Promise<string> {
+  const name = `kelvinleaf_test_${randomUUID().replaceAll('-', '')}`;
+  const client = new Client({ connectionString: url });
+  await client.connect();
+  await client.query(`CREATE DATABASE ${name}`);
+  await client.end();
+  const own = new URL(url);
+  own.pathname = `/${name}`;
+  return own.href;
 }
 
 export type Laboratory = Awaited<ReturnType<typeof startLaboratory>>;

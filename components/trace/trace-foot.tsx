@@ -1,0 +1,21 @@
+import type { TraceDto } from '@/lib/schemas/entry';
+
+/** Handle, file, size and digest, below a trace. */
+export function TraceFoot({ handle, file }: { handle: string; file: TraceDto | undefined }) {
+  return (
+    <p className="trace-foot">
+      <strong className="figures">{handle}</strong>
+      {file ? (
+        <>
+          <span>{file.fileName}</span>
+          <span>
+            {file.columns.length} columns, {file.rows.toLocaleString('en').replaceAll(',', '\u2009')} rows
+          </span>
+          <span className="trace-digest figures">digest {file.sha256.slice(0, 8)}</span>
+        </>
+      ) : (
+        <span>The file is being fetched.</span>
+      )}
+    </p>
+  );
+}
