@@ -13,6 +13,13 @@ export default {
   // Pages carry the nonce policy of proxy.ts; these hold for everything.
   async headers() {
     return [
+      // What answers outside the routes' own wrapper too: unknown addresses of the API, and the upload service.
+      {
+        source: '/api/:path*',
+        headers: [
+          { key: 'content-security-policy', value: "default-src 'none'; frame-ancestors 'none'; sandbox" },
+        ],
+      },
       {
         source: '/:path*',
         headers: [

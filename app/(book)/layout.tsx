@@ -1,5 +1,4 @@
 import Link from 'next/link';
-import { redirect } from 'next/navigation';
 import type { ReactNode } from 'react';
 import { CommandShell } from '@/components/shell/command-shell';
 import { BookHeader } from '@/components/shell/book-header';
@@ -10,7 +9,8 @@ import { countWaiting } from '@/server/queue/service';
 
 export default async function BookLayout({ children }: { children: ReactNode }) {
   const person = await currentPerson();
-  if (!person) redirect('/sign-in');
+  // Every page asks `pageAccess` itself, which leads to the sign-in page and, unlike a layout, knows the way back.
+  if (!person) return children;
   return (
     <CommandShell>
       <a href="#content" className="sr-only focus:not-sr-only focus:absolute focus:z-50 focus:bg-sheet focus:p-3">

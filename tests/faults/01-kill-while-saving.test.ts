@@ -1,14 +1,13 @@
 import fs from 'node:fs/promises';
-import os from 'node:os';
-import path from 'node:path';
 import { afterAll, beforeAll, expect, it } from 'vitest';
+import { temporaryFolder } from '../integration/temporary';
 import { bundle, start } from './child';
 
 let program: string;
 let dataDir: string;
 beforeAll(async () => {
   program = await bundle('saving-program');
-  dataDir = await fs.mkdtemp(path.join(os.tmpdir(), 'kelvinleaf-kill-'));
+  dataDir = await temporaryFolder('kill');
 });
 afterAll(() => fs.rm(dataDir, { recursive: true, force: true }));
 

@@ -1,5 +1,4 @@
 import fs from 'node:fs/promises';
-import os from 'node:os';
 import path from 'node:path';
 import { drizzle } from 'drizzle-orm/pglite';
 import { migrate } from 'drizzle-orm/pglite/migrator';
@@ -9,6 +8,7 @@ import { closeDatabase, openDatabase } from '@/server/db/client';
 import { closeEmbedded, openEmbedded, type JournaledPGlite } from '@/server/db/embedded';
 import { setting } from '@/server/db/schema/housekeeping';
 import { forgetEnv } from '@/server/env/env';
+import { temporaryFolder } from '../integration/temporary';
 import { bundle, start } from './child';
 
 /** What happens to the embedded database's folder when the machine, the disk or a person is unkind to it. */
@@ -18,7 +18,7 @@ let base: string;
 let count = 0;
 
 async function open(dataDir: string) {
-  Object.assign(process.env, { DATA_DIR: dataDir, DEMO: 'off', BASE_URL: 'http://localhost:3999' });
+  Object.assign(process.env, { DATA_DIR: dataDir, DEMO: 'off', DATABASE_URL: '', BASE_URL: 'http://localhost:3999' });
   forgetEnv();
   return openDatabase();
 }
@@ -45,7 +45,7 @@ async function rollBack(dataDir: string): Promise<void> {
 }
 
 beforeAll(async () => {
-  root = await fs.mkdtemp(path.join(os.tmpdir(), 'kelvinleaf-folder-'));
+  root = await temporaryFolder('folder');
   base = path.join(root, 'base');
   await open(base);
   await put('first', 1);

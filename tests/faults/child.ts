@@ -33,7 +33,7 @@ export type Child = {
 
 export function start(program: string, dataDir: string, args: string[] = []): Child {
   const child = spawn(process.execPath, [program, ...args], {
-    env: { ...process.env, DATA_DIR: dataDir, DEMO: 'off', BASE_URL: 'http://localhost:3999' },
+    env: { ...process.env, DATA_DIR: dataDir, DEMO: 'off', DATABASE_URL: '', BASE_URL: 'http://localhost:3999' },
     stdio: ['ignore', 'pipe', 'pipe'],
   });
   const lines: string[] = [];

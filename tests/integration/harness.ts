@@ -1,7 +1,5 @@
 import { randomUUID, scryptSync } from 'node:crypto';
 import fs from 'node:fs/promises';
-import os from 'node:os';
-import path from 'node:path';
 import { Client } from 'pg';
 import type { NotebookRole } from '@/lib/schemas/person';
 import { POST as signInRoute } from '@/app/api/auth/sign-in/route';
@@ -10,6 +8,7 @@ import { closeDatabase, getDb } from '@/server/db/client';
 import { notebookMember } from '@/server/db/schema/notebooks';
 import { forgetEnv } from '@/server/env/env';
 import { insertNotebook } from '@/server/notebooks/service';
+import { temporaryFolder } from './temporary';
 
 export const origin = 'http://localhost:3999';
 /** Read once: each laboratory then sets its own database's address. */
@@ -41,7 +40,7 @@ export type Answer<T = Record<string, unknown>> = { status: number; body: T; hea
  * and an administrator. Call `close()` at the end.
  */
 export async function startLaboratory(environment: Record<string, string> = {}) {
-  const dataDir = await fs.mkdtemp(path.join(os.tmpdir(), 'kelvinleaf-test-'));
+  const dataDir = await temporaryFolder('test');
   if (serverUrl) process.env.DATABASE_URL = await freshDatabase(serverUrl);
   Object.assign(process.env, { DATA_DIR: dataDir, BASE_URL: origin, DEMO: 'off', ...environment });
   forgetEnv();
