@@ -162,6 +162,7 @@ test('spans by typed numbers and by dragging, values with the right result and t
   await trace.getByRole('button', { name: 'Name this span' }).click();
   await expect(trace.getByRole('listitem').filter({ hasText: '16 to 44' })).toContainText('on');
 
+  await trace.getByText('Plot tools').click();
   await trace.getByLabel('drag marks a span').check();
   const area = trace.locator('.u-over');
   await area.scrollIntoViewIfNeeded();

@@ -1,6 +1,7 @@
 'use client';
 
 import { NodeViewWrapper, type ReactNodeViewProps } from '@tiptap/react';
+import Link from 'next/link';
 import type { TraceNodeAttributes } from '@/lib/document/attributes';
 import { useSheet, useTrace } from '@/components/editor/sheet-context/context';
 import { useDerived } from '@/components/editor/sheet-context/use-derived';
@@ -36,10 +37,14 @@ export function TraceView({ node, editor, selected, updateAttributes }: ReactNod
         <strong className="figures">{attributes.handle}</strong>
         {file ? (
           <>
-            <span>{file.fileName}</span>
-            <span>
-              {file.columns.length} columns, {file.rows.toLocaleString('en').replaceAll(',', '\u2009')} rows
-            </span>
+            <Link href={`/traces/${encodeURIComponent(file.id)}`} title="The trace on a page of its own">
+              {file.fileName}
+            </Link>
+            {file.state === 'parsed' ? (
+              <span>
+                {file.columns.length} columns, {file.rows.toLocaleString('en').replaceAll(',', '\u2009')} rows
+              </span>
+            ) : null}
             <span className="trace-digest figures">digest {file.sha256.slice(0, 8)}</span>
           </>
         ) : (

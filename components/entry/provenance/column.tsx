@@ -3,10 +3,11 @@
 import type { Editor } from '@tiptap/core';
 import type { Node as ProseMirrorNode } from '@tiptap/pm/model';
 import Link from 'next/link';
-import type { ReactNode } from 'react';
+import { useEffect, useState, type ReactNode } from 'react';
 import type { TraceNodeAttributes } from '@/lib/document/attributes';
 import type { BlockStamps, EntryDto } from '@/lib/schemas/entry';
 import { useResult, useSheet, useTrace, type Focus } from '@/components/editor/sheet-context/context';
+import { request } from '@/components/hooks/request';
 import { BlockProvenance } from './block-provenance';
 import { TraceProvenance } from './trace-provenance';
 import { ValueProvenance } from './value-provenance';
@@ -32,7 +33,9 @@ export function ProvenanceColumn({ entry, editor, stamps, written, names, onSign
       {focus?.blockId ? (
         <BlockProvenance stamp={stamps[focus.blockId]} written={written[focus.blockId]} names={names} />
       ) : null}
-      {!focus ? <p className="text-quiet">Choose a value, a trace or a paragraph to see where it comes from.</p> : null}
+      {!focus ? (
+        <p className="provenance-hint text-quiet">Choose a value, a trace or a paragraph to see where it comes from.</p>
+      ) : null}
       <ToCountersign entry={entry} onSign={onSign} />
       {children}
     </aside>
@@ -77,25 +80,52 @@ function OfTrace({ editor, focus }: { editor: Editor | null; focus: Focus }) {
   return <TraceProvenance node={node.attrs as TraceNodeAttributes} file={file} />;
 }
 
+type Obstacle = Pick<EntryDto, 'seen' | 'countersignObstacle'>;
+const askAgainMs = 1500;
+/** After that a reload asks; a page left open does not ask for ever. */
+const longestAsked = 40;
+
+/** What still stands before a countersignature. The traces are served while the page is read, so it is asked for again until all are. */
+function useObstacle(entry: EntryDto): Obstacle {
+  const [now, setNow] = useState<Obstacle>(entry);
+  useEffect(() => setNow(entry), [entry]);
+  const unseen = entry.state === 'signed' && now.seen.traces < now.seen.of;
+  useEffect(() => {
+    if (!unseen) return;
+    let asked = 0;
+    const timer = setInterval(() => {
+      if (document.visibilityState === 'hidden' || asked >= longestAsked) return;
+      asked += 1;
+      request<Obstacle>('GET', `/api/entries/${encodeURIComponent(entry.id)}`).then(
+        setNow,
+        () => undefined, // What stands there stays true as of then; the server decides when it is signed.
+      );
+    }, askAgainMs);
+    return () => clearInterval(timer);
+  }, [unseen, entry.id]);
+  return now;
+}
+
 function ToCountersign({ entry, onSign }: { entry: EntryDto; onSign?: () => void }) {
-  const waits = entry.state === 'signed' && (entry.may.countersign || entry.countersignObstacle !== null);
+  const { seen, countersignObstacle } = useObstacle(entry);
+  const waits = entry.state === 'signed' && (entry.may.countersign || countersignObstacle !== null);
   if (!waits && !entry.may.sign) return null;
   return (
     <section>
       <h2>{waits ? 'To countersign' : 'To sign'}</h2>
       {waits ? (
         <p>
-          {entry.seen.traces} of {entry.seen.of} {entry.seen.of === 1 ? 'trace' : 'traces'} seen.
+          {seen.traces} of {seen.of} {seen.of === 1 ? 'trace' : 'traces'} seen.
         </p>
       ) : null}
-      {waits && entry.countersignObstacle ? <p>{entry.countersignObstacle}</p> : null}
+      {waits && countersignObstacle ? <p>{countersignObstacle}</p> : null}
       {!waits && entry.late ? (
         <p>
           The work was {entry.late.days} days ago; the laboratory’s limit is {entry.late.limit}. Signing asks for the
           reason.
         </p>
       ) : null}
-      {waits && !entry.countersignObstacle ? (
+      {waits && !countersignObstacle ? (
         <Link className="press press-main" href={`/entries/${entry.id}/countersign`}>
           Countersign
         </Link>
