@@ -28,7 +28,9 @@ export default async function BookLayout({ children }: { children: ReactNode }) 
       {env().demo ? (
         <footer className="mx-auto max-w-[92rem] px-3 py-6 text-sm text-quiet sm:px-6">
           Demonstration with invented data: the group, its people, devices and traces do not exist.{' '}
-          <Link href="/mailbox" className="underline">Local mailbox</Link>
+          <Link href="/mailbox" className="underline">
+            Local mailbox
+          </Link>
         </footer>
       ) : null}
     </CommandShell>

@@ -1,5 +1,5 @@
 import type { DraftPorts, SaveReply, Sending } from '@/lib/draft/contract';
-import { clockTime } from '@/lib/document/nodes/log-line';
+import { clockTime } from '@/lib/document/clock-time';
 import { AppError } from '@/lib/errors/app-error';
 import type { DraftDto } from '@/lib/schemas/entry';
 import { refusalIn } from '@/components/hooks/request';

@@ -8,6 +8,7 @@ import { evaluateSheet } from '@/lib/expression/evaluate';
 import type { DraftDto, EntryDto, SaveDraft, VersionContentDto } from '@/lib/schemas/entry';
 import { CommandMenu } from '@/components/commands/command-menu';
 import { CommandProvider } from '@/components/commands/command-context';
+import { ReadingText } from '@/components/reading/reading-text';
 import { EntrySheet } from './entry-sheet';
 
 vi.mock('next/navigation', () => ({ useRouter: () => ({ push: vi.fn() }) }));
@@ -73,7 +74,9 @@ const saved = (revision: number): Reply => ({
   body: { revision, savedAt: '2026-11-19T13:03:22.000Z', stamps: {} },
 });
 
-beforeAll(() => {
+beforeAll(async () => {
+  // Fetched on first use; read here, so that no test waits for it.
+  await import('./writing-sheet');
   Range.prototype.getClientRects = () => [] as unknown as DOMRectList;
   Range.prototype.getBoundingClientRect = () => new DOMRect();
   document.elementFromPoint = () => null;
@@ -108,7 +111,7 @@ afterEach(() => {
 const write = (doc: DocumentJson, parts: Partial<EntryDto> = {}) =>
   render(
     <CommandProvider>
-      <EntrySheet entry={entry(parts)} draft={draft(doc)} version={null} person={tomas} build="b1" />
+      <EntrySheet entry={entry(parts)} draft={draft(doc)} version={null} text={null} person={tomas} build="b1" />
       <CommandMenu />
     </CommandProvider>,
   );
@@ -276,21 +279,24 @@ describe('reading', () => {
     ],
     traces: [],
   };
-  const read = (parts: Partial<EntryDto> = {}) =>
-    render(
+  const read = (parts: Partial<EntryDto> = {}) => {
+    const shown = entry({
+      state: 'signed',
+      may: { ...may, write: false, sign: false, ask: true, countersign: true },
+      head: { id: 'v1', seq: 6, digest: version.digest, createdAt: version.createdAt, createdBy: tomas },
+      ...parts,
+    });
+    return render(
       <EntrySheet
-        entry={entry({
-          state: 'signed',
-          may: { ...may, write: false, sign: false, ask: true, countersign: true },
-          head: { id: 'v1', seq: 6, digest: version.digest, createdAt: version.createdAt, createdBy: tomas },
-          ...parts,
-        })}
+        entry={shown}
         draft={null}
         version={version}
+        text={<ReadingText entry={shown} version={version} person={priya} />}
         person={priya}
         build="b1"
       />,
     );
+  };
 
   it('shows the version’s values, and where one comes from, by keyboard', async () => {
     read();

@@ -1,62 +1,30 @@
 'use client';
 
-import type { Editor } from '@tiptap/core';
 import { useEffect, useMemo, useState } from 'react';
-import { createPortal } from 'react-dom';
 import type { EntryDto, QuestionDto } from '@/lib/schemas/entry';
-import { showQuestionSlots } from '@/components/editor/question-slots';
 import { useSheet } from '@/components/editor/sheet-context/context';
 import { LongField } from '@/components/ui/field';
 import { ErrorSentence } from '@/components/ui/sentence';
 import { request } from '@/components/hooks/request';
+import type { SheetText } from './sheet-text';
 
 const moment = (iso: string) => `${iso.slice(0, 10)} ${iso.slice(11, 16)} UTC`;
 
-/** Questions at the place they were asked about; those whose block is gone stand below the text. */
-export function Questions({
-  editor,
+/** Questions whose block is gone, or that are about the whole entry. */
+export function QuestionsBelow({
   questions,
   onChanged,
 }: {
-  editor: Editor | null;
   questions: QuestionDto[];
   onChanged: (question: QuestionDto) => void;
 }) {
-  const slots = useMemo(() => {
-    const placed = new Set<string>();
-    editor?.state.doc.forEach((block) => placed.add(String(block.attrs.id)));
-    return questions.map((question) => {
-      const element = typeof document === 'undefined' ? null : document.createElement('div');
-      return { question, element, placed: question.blockId !== null && placed.has(question.blockId) };
-    });
-  }, [editor, questions]);
-
-  useEffect(() => {
-    if (!editor || editor.isDestroyed) return;
-    showQuestionSlots(
-      editor,
-      slots.flatMap(({ question, element, placed }) =>
-        placed && element && question.blockId ? [{ questionId: question.id, blockId: question.blockId, element }] : [],
-      ),
-    );
-  }, [editor, slots]);
-
-  const below = slots.filter((slot) => !slot.placed);
+  if (questions.length === 0) return null;
   return (
-    <>
-      {slots.map(({ question, element, placed }) =>
-        placed && element
-          ? createPortal(<Question question={question} onChanged={onChanged} />, element, question.id)
-          : null,
-      )}
-      {below.length > 0 ? (
-        <section className="questions-below" aria-label="Questions about the whole entry or about text that is gone">
-          {below.map(({ question }) => (
-            <Question key={question.id} question={question} onChanged={onChanged} />
-          ))}
-        </section>
-      ) : null}
-    </>
+    <section className="questions-below" aria-label="Questions about the whole entry or about text that is gone">
+      {questions.map((question) => (
+        <Question key={question.id} question={question} onChanged={onChanged} />
+      ))}
+    </section>
   );
 }
 
@@ -159,27 +127,22 @@ function TextForm({ label, button, onSend, onCancel, children }: FormProps) {
 /** Form to ask about the chosen place: a block, with the words that were marked in it. */
 export function AskForm({
   entry,
-  editor,
+  text,
   onAsked,
 }: {
   entry: EntryDto;
-  editor: Editor | null;
+  text: SheetText;
   onAsked: (question: QuestionDto) => void;
 }) {
   const { focus } = useSheet();
   const [open, setOpen] = useState(false);
   const [place, setPlace] = useState<string>('');
   const blocks = useMemo(() => {
-    const list: { id: string; words: string }[] = [];
-    if (!open) return list;
-    editor?.state.doc.forEach((block) => {
-      const words = block.type.name === 'trace' ? `trace ${String(block.attrs.handle)}` : block.textContent;
-      if (typeof block.attrs.id === 'string' && words.trim())
-        list.push({ id: block.attrs.id, words: words.slice(0, 60) });
-    });
-    return list;
-  }, [editor, open]);
-  useEffect(() => setPlace(blockOf(editor, focus?.id ?? null) ?? ''), [editor, focus]);
+    if (!open) return [];
+    const listed = text.blocks().filter(({ words }) => words.trim() !== '');
+    return listed.map(({ id, words }) => ({ id, words: words.slice(0, 60) }));
+  }, [text, open]);
+  useEffect(() => setPlace((focus && text.blockOf(focus.id)) ?? ''), [text, focus]);
   if (!entry.may.ask || !entry.head) return null;
   const { digest } = entry.head;
   if (!open) {
@@ -189,7 +152,7 @@ export function AskForm({
       </button>
     );
   }
-  const quote = focus && blockOf(editor, focus.id) === place ? focus.quote.slice(0, 300) : '';
+  const quote = focus && text.blockOf(focus.id) === place ? focus.quote.slice(0, 300) : '';
   return (
     <TextForm
       label="Your question"
@@ -215,17 +178,4 @@ export function AskForm({
       {quote ? <blockquote>{quote}</blockquote> : null}
     </TextForm>
   );
-}
-
-/** Id of the top-level block that is or holds the node of this id. */
-function blockOf(editor: Editor | null, id: string | null): string | null {
-  let found: string | null = null;
-  if (id === null) return null;
-  editor?.state.doc.forEach((block) => {
-    if (block.attrs.id === id) found = id;
-    block.descendants((node) => {
-      if (node.attrs.id === id && typeof block.attrs.id === 'string') found = block.attrs.id;
-    });
-  });
-  return found;
 }

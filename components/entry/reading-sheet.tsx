@@ -1,41 +1,55 @@
 'use client';
 
-import { EditorContent } from '@tiptap/react';
-import { useMemo, useState } from 'react';
+import { useCallback, useMemo, useRef, useState, type ReactNode } from 'react';
+import type { DerivedColumn } from '@/lib/expression/contract';
 import type { EntryDto, PersonDto, VersionContentDto } from '@/lib/schemas/entry';
-import { readingExtensions } from '@/components/editor/editor-extensions';
-import { SheetProvider, type Focus } from '@/components/editor/sheet-context/context';
+import { SheetProvider, type Focus, type SheetResults } from '@/components/editor/sheet-context/context';
+import { VersionProvider } from '@/components/reading/version-context';
 import { GutterNote } from './gutter-note';
+import { peopleOf } from './people';
 import { ProvenanceColumn } from './provenance/column';
-import { AskForm, Questions } from './questions';
+import { AskForm, QuestionsBelow } from './questions';
 import { SheetHead } from './sheet-head';
-import { StaticText } from './static-text';
-import { useEntryEditor } from './use-entry-editor';
-import { peopleOf, useQuestions, useStampsShown } from './use-entry-people';
-import { useSheetStore } from './use-sheet-store';
+import { textOfDocument } from './sheet-text';
+import { useQuestions } from './use-questions';
 
-type Props = { entry: EntryDto; version: VersionContentDto; person: PersonDto | null };
+type Props = {
+  entry: EntryDto;
+  version: VersionContentDto;
+  person: PersonDto;
+  /** The version's text, as the server has rendered it. */
+  text: ReactNode;
+};
 
-const noChange = () => undefined;
 const nothingWritten = {};
 
+/** A version's results never change. */
+function resultsOf(version: VersionContentDto): SheetResults {
+  const byId = new Map(version.values.map((value) => [value.id, value]));
+  return { subscribe: () => () => undefined, result: (id) => byId.get(id), results: () => version.values };
+}
+
 /** A version as it was bound: the same sheet, read-only, with the values that the version holds. */
-export function ReadingSheet({ entry, version, person }: Props) {
+export function ReadingSheet({ entry, version, person, text: rendered }: Props) {
   const [focus, setFocus] = useState<Focus | null>(null);
   const traces = useMemo(() => new Map(entry.traces.map((trace) => [trace.id, trace])), [entry.traces]);
-  const store = useSheetStore(entry.id, traces, version.values);
+  const store = useMemo(() => resultsOf(version), [version]);
+  const text = useMemo(() => textOfDocument(version.doc), [version.doc]);
+  const placed = useMemo(() => new Set(text.blocks().map(({ id }) => id)), [text]);
   const { questions, changed } = useQuestions(entry.questions);
-  const editor = useEntryEditor({
-    extensions: readingExtensions,
-    doc: version.doc,
-    editable: false,
-    store,
-    label: 'Text of the entry',
-    onChange: noChange,
-    onFocus: noChange,
-  });
   const people = useMemo(() => peopleOf(entry, person), [entry, person]);
-  useStampsShown(editor, version.stamps, nothingWritten, people, '', entry.workDate);
+
+  const made = useRef<Promise<Map<string, DerivedColumn>> | null>(null);
+  const columns = useCallback(() => {
+    if (!made.current) {
+      made.current = import('@/components/reading/recalculate').then(({ recalculateColumns }) =>
+        recalculateColumns(version.doc, traces),
+      );
+      // One that failed is tried again at the next question.
+      made.current.catch(() => (made.current = null));
+    }
+    return made.current;
+  }, [version.doc, traces]);
 
   /** A block becomes the subject when it is clicked, or when words in it are marked. Values and traces speak for themselves. */
   const choose = (event: React.MouseEvent) => {
@@ -50,30 +64,32 @@ export function ReadingSheet({ entry, version, person }: Props) {
   };
 
   return (
-    <SheetProvider value={{ entryId: entry.id, mode: 'read', person, store, traces, focus, setFocus }}>
-      <div className="entry">
-        <article className="sheet" aria-label={`${entry.notebook.code} leaf ${entry.leaf}`}>
-          <SheetHead entry={entry} title={version.title} version={version} onTitle={null} />
-          {/* The mouse chooses a block here; the keyboard does through the values, the traces and the list in the form to ask. */}
-          {}
-          <div onClick={choose}>
-            <GutterNote stamps={version.stamps}>
-              {editor ? <EditorContent editor={editor} /> : <StaticText doc={version.doc} />}
-            </GutterNote>
-          </div>
-          <Questions editor={editor} questions={questions} onChanged={changed} />
-          <Signatures entry={entry} />
-        </article>
-        <ProvenanceColumn
-          entry={entry}
-          editor={editor}
-          stamps={version.stamps}
-          written={nothingWritten}
-          names={people.names}
-        >
-          <AskForm entry={entry} editor={editor} onAsked={changed} />
-        </ProvenanceColumn>
-      </div>
+    <SheetProvider value={{ entryId: entry.id, mode: 'read', person, store, live: null, traces, focus, setFocus }}>
+      <VersionProvider value={{ questions, onQuestion: changed, columns }}>
+        <div className="entry">
+          <article className="sheet" aria-label={`${entry.notebook.code} leaf ${entry.leaf}`}>
+            <SheetHead entry={entry} title={version.title} version={version} onTitle={null} />
+            {/* The mouse chooses a block here; the keyboard does through the values, the traces and the list in the form to ask. */}
+            <div onClick={choose}>
+              <GutterNote stamps={version.stamps}>{rendered}</GutterNote>
+            </div>
+            <QuestionsBelow
+              questions={questions.filter(({ blockId }) => blockId === null || !placed.has(blockId))}
+              onChanged={changed}
+            />
+            <Signatures entry={entry} />
+          </article>
+          <ProvenanceColumn
+            entry={entry}
+            text={text}
+            stamps={version.stamps}
+            written={nothingWritten}
+            names={people.names}
+          >
+            <AskForm entry={entry} text={text} onAsked={changed} />
+          </ProvenanceColumn>
+        </div>
+      </VersionProvider>
     </SheetProvider>
   );
 }
@@ -87,8 +103,15 @@ function Signatures({ entry }: { entry: EntryDto }) {
           <strong>{signature.printedName}</strong>,{' '}
           <time dateTime={signature.signedAt}>{signature.signedAt.slice(0, 19).replace('T', ' ')} UTC</time> (
           {signature.zone}): {signature.meaning}
-          {signature.lateReason ? ` Signed late: ${signature.lateReason}` : ''}{' '}
-          <span className="figures text-quiet">version {signature.versionDigest.slice(0, 8)}</span>
+          {signature.lateReason ? (
+            <>
+              {' '}
+              <strong className="text-attention">Late.</strong> {signature.lateReason}
+            </>
+          ) : null}{' '}
+          <span className="text-quiet">
+            version <span className="figures">{signature.versionDigest.slice(0, 8)}</span>, attested by the server
+          </span>
         </p>
       ))}
     </section>

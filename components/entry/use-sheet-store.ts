@@ -27,20 +27,9 @@ function newStore(entryId: string): SheetStore {
   });
 }
 
-/** The sheet's results: recalculated while writing, as bound by the version while reading. */
-export function useSheetStore(
-  entryId: string,
-  traces: ReadonlyMap<string, TraceDto>,
-  bound: ValueResult[] | null,
-): SheetStore {
-  const [store] = useState(() => {
-    const fresh = newStore(entryId);
-    if (bound) fresh.bind(bound);
-    return fresh;
-  });
+/** The sheet's results, recalculated while writing. */
+export function useSheetStore(entryId: string, traces: ReadonlyMap<string, TraceDto>): SheetStore {
+  const [store] = useState(() => newStore(entryId));
   useEffect(() => store.setTraces(traces.values()), [store, traces]);
-  useEffect(() => {
-    if (bound) store.bind(bound);
-  }, [store, bound]);
   return store;
 }

@@ -9,6 +9,7 @@ import type { DraftDto, EntryDto, PersonDto, TraceDto } from '@/lib/schemas/entr
 import { usePageCommands, type Command } from '@/components/commands/command-context';
 import { editorActions } from '@/components/editor/actions';
 import { writingExtensions } from '@/components/editor/editor-extensions';
+import { textOfEditor } from '@/components/editor/editor-text';
 import { SheetProvider, type Focus } from '@/components/editor/sheet-context/context';
 import { Toolbar } from '@/components/editor/toolbar';
 import { useDraft } from '@/components/hooks/use-draft';
@@ -16,15 +17,17 @@ import { sendFile } from '@/components/trace/send-file';
 import { AttachmentList } from './attachment-list';
 import { Compare } from './compare';
 import { GutterNote } from './gutter-note';
+import { peopleOf } from './people';
 import { ProvenanceColumn } from './provenance/column';
-import { Questions } from './questions';
 import { RenewDialog } from './renew-dialog';
 import { SaveLine } from './save-line';
 import { SheetHead } from './sheet-head';
 import { useAttachments } from './use-attachments';
 import { replaceText, useEntryEditor } from './use-entry-editor';
-import { peopleOf, useQuestions, useStampsShown } from './use-entry-people';
+import { useQuestions } from './use-questions';
 import { useSheetStore } from './use-sheet-store';
+import { useStampsShown } from './use-stamps-shown';
+import { WrittenQuestions } from './written-questions';
 
 type Props = { entry: EntryDto; draft: DraftDto; person: PersonDto; build: string };
 
@@ -36,7 +39,7 @@ export function WritingSheet({ entry, draft: first, person, build }: Props) {
   const [renewing, setRenewing] = useState(false);
   const [traces, setTraces] = useState(() => new Map(entry.traces.map((trace) => [trace.id, trace])));
   const { questions, changed: questionChanged } = useQuestions(entry.questions);
-  const store = useSheetStore(entry.id, traces, null);
+  const store = useSheetStore(entry.id, traces);
   const held = useRef<Editor | null>(null);
 
   const draft = useDraft({
@@ -89,6 +92,7 @@ export function WritingSheet({ entry, draft: first, person, build }: Props) {
   const people = useMemo(() => peopleOf(entry, person), [entry, person]);
   useStampsShown(editor, draft.stamps, draft.written, people, person.initials, entry.workDate);
 
+  const text = useMemo(() => textOfEditor(editor), [editor]);
   const { cutVersion } = draft;
   const router = useRouter();
   // A signature binds a version: it is cut of the newest text, and where that fails the reason stands beside the text.
@@ -156,7 +160,7 @@ export function WritingSheet({ entry, draft: first, person, build }: Props) {
   const old = leftOver[0];
 
   return (
-    <SheetProvider value={{ entryId: entry.id, mode: 'write', person, store, traces, focus, setFocus }}>
+    <SheetProvider value={{ entryId: entry.id, mode: 'write', person, store, live: store, traces, focus, setFocus }}>
       <div className="entry">
         <article className="sheet" aria-label={`${entry.notebook.code} leaf ${entry.leaf}`}>
           <SheetHead
@@ -211,11 +215,11 @@ export function WritingSheet({ entry, draft: first, person, build }: Props) {
           <GutterNote stamps={draft.stamps}>
             <EditorContent editor={editor} />
           </GutterNote>
-          <Questions editor={editor} questions={questions} onChanged={questionChanged} />
+          <WrittenQuestions editor={editor} questions={questions} onChanged={questionChanged} />
         </article>
         <ProvenanceColumn
           entry={entry}
-          editor={editor}
+          text={text}
           stamps={draft.stamps}
           written={draft.written}
           names={people.names}

@@ -42,3 +42,33 @@ export function withDerived(own: PlotProvider, derived: DerivedValues[]): PlotPr
     column: values,
   };
 }
+
+/**
+ * A trace's own columns with derived ones that are known by name; their samples are made by `load`, in the same order,
+ * when a view, a page or a column first needs them.
+ */
+export function withPromised(
+  own: PlotProvider,
+  derived: { symbol: string; unit: string | null }[],
+  load: () => Promise<DerivedValues[]>,
+): PlotProvider {
+  if (derived.length === 0) return own;
+  let made: Promise<PlotProvider> | null = null;
+  const whole = (): Promise<PlotProvider> => {
+    if (!made) {
+      made = load().then((values) => withDerived(own, values));
+      // One that failed is tried again at the next question.
+      made.catch(() => (made = null));
+    }
+    return made;
+  };
+  const isDerived = (symbol: string | null) => derived.some((column) => column.symbol === symbol);
+  const of = async (...symbols: (string | null)[]) => (symbols.some(isDerived) ? whole() : own);
+  return {
+    rows: own.rows,
+    columns: [...own.columns, ...derived.map(({ symbol, unit }) => ({ symbol, unit, min: null, max: null }))],
+    view: async (x, y, range) => (await of(x, y)).view(x, y, range),
+    page: async (from, count) => (await whole()).page(from, count),
+    column: async (symbol) => (await of(symbol)).column(symbol),
+  };
+}

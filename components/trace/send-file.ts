@@ -1,4 +1,3 @@
-import { genUploader, UploadAbortedError } from 'uploadthing/client';
 import type { FileRouter } from 'uploadthing/server';
 import { request } from '@/components/hooks/request';
 import { AppError } from '@/lib/errors/app-error';
@@ -22,12 +21,17 @@ type CreateUpload = (
   options: { files: File[]; input: UploadInput; onUploadProgress: (event: { loaded: number }) => void },
 ) => Promise<Running>;
 
-let createUpload: CreateUpload | null = null;
-function uploader(): CreateUpload {
+type Uploader = { createUpload: CreateUpload; isAbort: (error: unknown) => boolean };
+
+/** The library is fetched with the first file that is sent. */
+async function uploader(): Promise<Uploader> {
+  const { genUploader, UploadAbortedError } = await import('uploadthing/client');
   const url = new URL('/api/uploadthing', window.location.origin);
-  createUpload ??= genUploader<FileRouter>({ url, package: '@uploadthing/react' })
-    .createUpload as unknown as CreateUpload;
-  return createUpload;
+  const { createUpload } = genUploader<FileRouter>({ url, package: '@uploadthing/react' });
+  return {
+    createUpload: createUpload as unknown as CreateUpload,
+    isAbort: (error) => error instanceof UploadAbortedError,
+  };
 }
 
 /** A refusal that sending again does not change. */
@@ -71,13 +75,14 @@ export async function sendFile(kind: Kind, file: File, options: SendOptions): Pr
   async function transfer(): Promise<UploadOutcome> {
     onProgress('sending', 0);
     try {
-      const running = await uploader()(kind, {
+      const { createUpload, isAbort } = await uploader();
+      const running = await createUpload(kind, {
         files: [file],
         input: { entryId, files: [{ uploadId, sha256: digest }] },
         onUploadProgress: ({ loaded }) =>
           onProgress(loaded >= file.size ? 'recording' : 'sending', Math.min(loaded, file.size)),
       });
-      const pause = () => pauseQuietly(running);
+      const pause = () => pauseQuietly(running, isAbort);
       onControl?.({ pause, resume: () => running.resumeUpload() });
       signal.throwIfAborted();
       const done = await Promise.race([running.done(), ended(signal, pause)]);
@@ -98,12 +103,12 @@ export async function sendFile(kind: Kind, file: File, options: SendOptions): Pr
   }
 }
 
-function pauseQuietly(running: Running): void {
+function pauseQuietly(running: Running, isAbort: Uploader['isAbort']): void {
   try {
     running.pauseUpload();
   } catch (error) {
     // The library throws where it is paused already; that is what was asked for.
-    if (!(error instanceof UploadAbortedError)) throw error;
+    if (!isAbort(error)) throw error;
   }
 }
 

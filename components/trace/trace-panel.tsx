@@ -2,13 +2,14 @@
 
 import { useEffect, useMemo, useRef, useState } from 'react';
 import { withDerived, type DerivedValues } from '@/components/plot/derived-provider';
-import { serverProvider } from '@/components/plot/provider';
 import { TracePlot } from '@/components/plot/trace-plot';
 import { Facts } from '@/components/ui/facts';
 import type { TraceNodeAttributes, TraceSettings } from '@/lib/document/attributes';
 import type { TraceDto } from '@/lib/schemas/entry';
 import { settingsProblems } from './first-settings';
-import { driveLabels, instrumentLabels, scanNames } from './scan-kinds';
+import { stated } from './stated';
+import { TraceDetails } from './trace-details';
+import { traceProvider } from './trace-provider';
 import { TraceSettingsForm } from './trace-settings-form';
 
 type Attributes = Pick<TraceNodeAttributes, 'traceId' | 'handle' | 'settings' | 'spans' | 'view'>;
@@ -26,7 +27,7 @@ const restMs = 700;
 
 /** A received trace: its plot with named spans, and what its author says of it. */
 export function TracePanel({ attributes, file, derived, onAttributes }: Props) {
-  const { traceId, handle, settings, spans } = attributes;
+  const { handle, settings, spans } = attributes;
   const [view, setView] = useState(attributes.view);
   const write = useRef(onAttributes);
   useEffect(() => {
@@ -49,16 +50,10 @@ export function TracePanel({ attributes, file, derived, onAttributes }: Props) {
     return () => clearTimeout(timer);
   }, [view]);
 
-  const { rows, columns: facts } = file;
-  const provider = useMemo(() => {
-    const columns = settings.columns.map(({ symbol, unit }, i) => ({
-      symbol,
-      unit,
-      min: facts[i]?.min ?? null,
-      max: facts[i]?.max ?? null,
-    }));
-    return withDerived(serverProvider(traceId, rows, columns), derived);
-  }, [traceId, rows, facts, settings.columns, derived]);
+  const provider = useMemo(
+    () => withDerived(traceProvider(file, settings.columns), derived),
+    [file, settings.columns, derived],
+  );
 
   const problems = settingsProblems(settings);
   const open = Object.keys(problems).length;
@@ -84,21 +79,13 @@ export function TracePanel({ attributes, file, derived, onAttributes }: Props) {
         spans={spans}
         onSpans={onAttributes && ((next) => onAttributes({ spans: next }))}
       />
-      <details className="my-2" open={(open > 0 && onAttributes !== undefined) || undefined}>
-        <summary className="min-h-6 cursor-pointer text-action">
-          Units, gains and scan of {handle}
-          {open > 0 ? (
-            <span className="text-error">
-              : {open} {open === 1 ? 'thing' : 'things'} to state
-            </span>
-          ) : null}
-        </summary>
+      <TraceDetails handle={handle} open={open} unfold={open > 0 && onAttributes !== undefined}>
         {onAttributes ? (
           <TraceSettingsForm settings={settings} onChange={change} problems={problems} />
         ) : (
           <Facts facts={stated(settings)} />
         )}
-      </details>
+      </TraceDetails>
     </>
   );
 }
@@ -109,27 +96,4 @@ function renaming(before: TraceSettings, after: TraceSettings): (symbol: string)
     const index = before.columns.findIndex((column) => column.symbol === symbol);
     return index < 0 ? symbol : (after.columns[index]?.symbol ?? symbol);
   };
-}
-
-function stated(settings: TraceSettings): [string, string | null][] {
-  const of = (quantity: { text: string; source: string } | null, name: string) =>
-    quantity ? `, ${name} ${quantity.text}${quantity.source ? ` (${quantity.source})` : ''}` : '';
-  return [
-    ...settings.columns.map(({ symbol, name, unit, gain, offset }): [string, string] => [
-      symbol,
-      `${name}, ${unit === null ? 'unit not stated' : unit === '1' ? 'a plain number' : unit}${of(gain, 'gain')}${of(offset, 'offset')}`,
-    ]),
-    ['Measured', settings.scanKind && scanNames[settings.scanKind]],
-    ['Sign of the current', settings.sign],
-    ['A positive current means', settings.signConvention],
-    ['Sweep direction', settings.sweepDirection],
-    ...Object.entries(driveLabels).map(([field, { label }]): [string, string | null] => [
-      label,
-      settings.drive[field as keyof typeof driveLabels],
-    ]),
-    ...Object.entries(instrumentLabels).map(([field, { label }]): [string, string | null] => [
-      label,
-      settings.instrument[field as keyof typeof instrumentLabels],
-    ]),
-  ];
 }

@@ -1,8 +1,8 @@
 import { diffArrays } from 'diff';
 import type { DocumentJson, NodeJson } from './json';
-import { valueLine } from './nodes/value';
 import { sameDocument } from './same';
 import { documentText } from './text';
+import { valueLine } from './value-line';
 
 export type TextPart = { text: string; change: 'same' | 'added' | 'removed' };
 

@@ -1,6 +1,6 @@
 import { describe, expect, it } from 'vitest';
 import { clockTimeSchema } from './attributes';
-import { clockTime } from './nodes/log-line';
+import { clockTime } from './clock-time';
 
 /** Zone as getTimezoneOffset gives it: minutes to add to local time to reach UTC (ECMA-262 21.4.4.11). */
 class Zoned extends Date {

@@ -1,6 +1,6 @@
 import { cautionText } from './caution-text';
 import type { NodeJson } from './json';
-import { valueLine } from './nodes/value';
+import { valueLine } from './value-line';
 
 const lineTypes = new Set([
   'paragraph',

@@ -1,7 +1,7 @@
 import { Refusal } from '@/lib/errors/refusal';
 import { combine, coverage } from '@/lib/quantity/combine';
 import type { Correlations } from '@/lib/quantity/correlation';
-import { show, writeText, type Shown } from '@/lib/quantity/format';
+import { show, writeText } from '@/lib/quantity/format';
 import type { Column, Scalar } from '@/lib/quantity/quantity';
 import { sameDimension } from '@/lib/units/dimension';
 import { parseUnit, type Unit } from '@/lib/units/parse';
@@ -68,30 +68,35 @@ export function scalarResult(
 ): ValueResult {
   const combined = combine(scalar, correlations);
   const shown = show(scalar, combined.u, { unit: wishedUnit(cell, line, scalar), significant: cell.digits });
-  const result = blank(cell, line, 'ok');
-  result.text = writeText(shown);
-  result.mathml = resultMathml(line.tex.symbolMathml, shown);
-  result.value = shown.value;
-  result.unit = shown.unit.text;
-  result.u = shown.u;
-  result.dof = combined.dof;
-  result.k = combined.k;
-  result.expanded = combined.k === null ? null : combined.k * shown.u;
-  result.warnings = [...new Set([...warnings, ...combined.warnings])];
-  return withBudget(result, scalar, shown);
-}
-
-/**
- * Budgets are read one at a time, and written for 200 values at every keystroke they would cost more than all else:
- * they are made when first asked for. The property is the object's own and enumerable, so copies and JSON hold it.
- */
-function withBudget(result: ValueResult, scalar: Scalar, shown: Shown): ValueResult {
+  // Budgets and MathML are read one value at a time, and made for 200 values at every keystroke they would cost more than
+  // all else: they are made when first asked for. The properties are the object's own and enumerable, so that copies and
+  // JSON hold them.
   let budget: BudgetLine[] | null = null;
-  return Object.defineProperty(result, 'budget', {
-    enumerable: true,
-    configurable: true,
-    get: () => (budget ??= budgetOf(scalar, shown)),
-  });
+  let mathml: string | null = null;
+  return {
+    id: cell.id,
+    symbol: line.symbol,
+    state: 'ok',
+    text: writeText(shown),
+    symbolTex: line.tex.symbol,
+    expressionTex: line.tex.expression,
+    get mathml() {
+      return (mathml ??= resultMathml(line.tex.symbolMathml, shown));
+    },
+    value: shown.value,
+    unit: shown.unit.text,
+    u: shown.u,
+    dof: combined.dof,
+    k: combined.k,
+    expanded: combined.k === null ? null : combined.k * shown.u,
+    coverage,
+    get budget() {
+      return (budget ??= budgetOf(scalar, shown));
+    },
+    dependsOn: line.dependsOn,
+    warnings: warnings.length + combined.warnings.length === 0 ? [] : [...new Set([...warnings, ...combined.warnings])],
+    error: null,
+  };
 }
 
 export function columnResult(

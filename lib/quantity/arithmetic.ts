@@ -44,8 +44,10 @@ type Terms = Map<string, Term<Series>>;
 function addTerms(into: Terms, terms: ReadonlyMap<string, Term<Series>>, partial: Series): void {
   for (const [id, { input, c }] of terms) {
     const here = typeof c === 'number' && typeof partial === 'number' ? c * partial : each2(c, partial, product);
-    const before = into.get(id);
-    into.set(id, { input, c: before === undefined ? here : each2(before.c, here, sum) });
+    const before = into.get(id)?.c;
+    if (before === undefined) into.set(id, { input, c: here });
+    else if (typeof before === 'number' && typeof here === 'number') into.set(id, { input, c: before + here });
+    else into.set(id, { input, c: each2(before, here, sum) });
   }
 }
 
@@ -105,17 +107,24 @@ export function multiply(a: Quantity, b: Quantity, shape: Omit<Shape, 'dimension
   const x = seriesOf(a);
   const y = seriesOf(b);
   const dimension = multiplyDimensions(a.dimension, b.dimension);
-  return assemble(a, b, { z: each2(x, y, product), dx: y, dy: x }, { ...shape, dimension, scale: 'linear' });
+  const z = typeof x === 'number' && typeof y === 'number' ? x * y : each2(x, y, product);
+  const { hint, label } = shape;
+  return assemble(a, b, { z, dx: y, dy: x }, { hint, label, dimension, scale: 'linear' });
 }
 
 /** b = 0 gives NaN rows in columns; of scalars the caller refuses it first. */
 export function divide(a: Quantity, b: Quantity, shape: Omit<Shape, 'dimension' | 'scale'>): Quantity {
   const x = seriesOf(a);
   const y = seriesOf(b);
+  const dimension = multiplyDimensions(a.dimension, b.dimension, -1);
+  const whole: Shape = { hint: shape.hint, label: shape.label, dimension, scale: 'linear' };
+  if (typeof x === 'number' && typeof y === 'number') {
+    const quotient = x / y;
+    return assemble(a, b, { z: quotient, dx: 1 / y, dy: b.terms.size > 0 ? -quotient / y : 0 }, whole);
+  }
   const z = each2(x, y, (p, q) => p / q);
   const dy = b.terms.size > 0 ? each2(z, y, (p, q) => -p / q) : 0;
-  const dimension = multiplyDimensions(a.dimension, b.dimension, -1);
-  return assemble(a, b, { z, dx: each(y, (q) => 1 / q), dy }, { ...shape, dimension, scale: 'linear' });
+  return assemble(a, b, { z, dx: each(y, (q) => 1 / q), dy }, whole);
 }
 
 /** a to a fixed power. */

@@ -42,6 +42,8 @@ function times(a: Series, b: number): Series {
 }
 
 function add(terms: Map<string, Term<Series>>, id: string, input: Input, c: Series): void {
-  const before = terms.get(id);
-  terms.set(id, before ? { input, c: each2(before.c, c, (x, y) => x + y) } : { input, c });
+  const before = terms.get(id)?.c;
+  if (before === undefined) terms.set(id, { input, c });
+  else if (typeof before === 'number' && typeof c === 'number') terms.set(id, { input, c: before + c });
+  else terms.set(id, { input, c: each2(before, c, (x, y) => x + y) });
 }

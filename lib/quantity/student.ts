@@ -55,17 +55,24 @@ const asGoodAsNormal = 1e7;
 /** From here on the expansion in 1/ν has all the digits of a double that matter. */
 const manyDegrees = 1000;
 
-const known = new Map<string, number>();
+/** By probability, then by degrees of freedom; numbers as keys, since writing them out costs more than the search. */
+const known = new Map<number, Map<number, number>>();
+const knownNormal = new Map<number, number>();
 
 /** t_p(ν): half-width of the interval, in standard uncertainties, that covers `probability`; ν ≥ 1, null for infinite. */
 export function coverageFactor(probability: number, dof: number | null): number {
   if (dof === null || dof > asGoodAsNormal) return normalCoverageFactor(probability);
-  const key = `${probability}|${dof}`;
-  const found = known.get(key);
+  let byDof = known.get(probability);
+  if (!byDof) {
+    if (known.size > 50) known.clear();
+    byDof = new Map();
+    known.set(probability, byDof);
+  }
+  const found = byDof.get(dof);
   if (found !== undefined) return found;
   const t = solveStudent(probability, dof);
-  if (known.size > 5000) known.clear();
-  known.set(key, t);
+  if (byDof.size > 5000) byDof.clear();
+  byDof.set(dof, t);
   return t;
 }
 
@@ -99,8 +106,7 @@ function expansion(z: number, dof: number): number {
 
 /** z with erf(z/√2) = probability. */
 export function normalCoverageFactor(probability: number): number {
-  const key = `${probability}`;
-  const found = known.get(key);
+  const found = knownNormal.get(probability);
   if (found !== undefined) return found;
   let z = probability * Math.sqrt(Math.PI / 2);
   for (let step = 0; step < 200; step++) {
@@ -108,7 +114,7 @@ export function normalCoverageFactor(probability: number): number {
     z += move;
     if (Math.abs(move) <= 1e-9 * z) break;
   }
-  known.set(key, z);
+  knownNormal.set(probability, z);
   return z;
 }
 

@@ -4,6 +4,12 @@ import { commonPasswords } from './common-passwords';
 // Bidirectional controls, zero-width and other invisible characters, and control characters: a printed name shows what it is.
 const invisible = /[\p{Cc}\p{Cf}\p{Zl}\p{Zp}\u034f\u115f\u1160\u17b4\u17b5\u3164\uffa0]/u;
 
+// A word of one name in two alphabets that share letter shapes looks like somebody else's name.
+const mixedAlphabets = (name: string) =>
+  name
+    .split(/\s+/)
+    .some((word) => [/\p{sc=Latn}/u, /\p{sc=Cyrl}/u, /\p{sc=Grek}/u].filter((script) => script.test(word)).length > 1);
+
 export const personNameSchema = z
   .string()
   .trim()
@@ -13,9 +19,10 @@ export const personNameSchema = z
       .string()
       .min(2, 'Give the full name, as it is to be printed with a signature.')
       .max(120, 'A name has at most 120 characters.')
+      .refine((name) => !invisible.test(name), 'The name has invisible or direction-changing characters; type it anew.')
       .refine(
-        (name) => !invisible.test(name),
-        'The name has invisible or direction-changing characters; type it anew.',
+        (name) => !mixedAlphabets(name),
+        'A word of the name mixes two alphabets, so that it can look like another name; type it in one.',
       ),
   );
 

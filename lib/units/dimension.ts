@@ -11,8 +11,22 @@ function tidy(exponent: number): number {
   return rounded === 0 ? 0 : rounded;
 }
 
+/** Products and quotients made before: a sheet multiplies the same few dimensions at every keystroke. */
+const products = new WeakMap<Dimension, WeakMap<Dimension, Dimension>>();
+const quotients = new WeakMap<Dimension, WeakMap<Dimension, Dimension>>();
+
 export function multiplyDimensions(a: Dimension, b: Dimension, power = 1): Dimension {
   if (b === dimensionless) return a;
+  const made = power === 1 ? products : power === -1 ? quotients : null;
+  if (!made) return multiplied(a, b, power);
+  let ofA = made.get(a);
+  if (!ofA) made.set(a, (ofA = new WeakMap()));
+  let result = ofA.get(b);
+  if (!result) ofA.set(b, (result = multiplied(a, b, power)));
+  return result;
+}
+
+function multiplied(a: Dimension, b: Dimension, power: number): Dimension {
   return [
     tidy(a[0] + power * b[0]),
     tidy(a[1] + power * b[1]),

@@ -7,6 +7,7 @@ import { eq } from 'drizzle-orm';
 import { getDb, type Db } from '@/server/db/client';
 import { schema } from '@/server/db/schema/all';
 import { env, secrets } from '@/server/env/env';
+import { report } from '@/server/diagnostics/report';
 import { queueMail } from '@/server/mail/service';
 import { checkPassword, hashPassword } from './password';
 
@@ -24,6 +25,8 @@ function build(db: Db) {
     secret: secrets().session,
     database: drizzleAdapter(db, { provider: 'pg', schema }),
     telemetry: { enabled: false },
+    // Failed sign-ins are in the security log; the rest goes where our own lines go, without colours.
+    logger: { level: 'error', log: (level, message) => report('sign-in library', { level, message }) },
     // Our own limits count per account and per address, in the database.
     rateLimit: { enabled: false },
     emailAndPassword: {

@@ -53,6 +53,10 @@ export async function signOut(headers: Headers): Promise<Response> {
   return withCookies(await auth.api.signOut({ headers, asResponse: true }), {});
 }
 
+/** A time-based code stays right for up to 90 s; its second use is somebody else's. */
+const usedCodeSeconds = 180;
+const usedCode = (personId: string, code: string) => `used-code:${personId}:${code}`;
+
 /** Finishes a sign-in with a code of the second factor, or a recovery code. A code works once. */
 export async function finishSecondFactor(
   headers: Headers,
@@ -72,8 +76,7 @@ export async function finishSecondFactor(
   const result = (await answer.json()) as { token?: string; user?: { id: string } };
   if (!input.recovery && result.user) {
     try {
-      // A time-based code stays right for up to 90 s; its second use is somebody else's.
-      await takeTurn(`used-code:${result.user.id}:${code}`, 1, 180);
+      await takeTurn(usedCode(result.user.id, code), 1, usedCodeSeconds);
     } catch (error) {
       if (!(error instanceof AppError)) throw error;
       if (result.token) await endSessionByToken(result.token);
@@ -88,12 +91,15 @@ async function endSessionByToken(sessionToken: string): Promise<void> {
   await (await getDb()).delete(session).where(eq(session.token, sessionToken));
 }
 
-/** Always the same answer, whether the address has an account or not. */
+/** Always the same answer after the same time, whether the address has an account or not. */
 export async function requestReset(headers: Headers, email: string): Promise<object> {
   await takeTurn(`reset:${email}`, 5, 3600);
   await takeTurn(`reset-address:${clientAddress(headers)}`, 60, 3600);
   const auth = await getAuth();
+  // Only a known address gets a mail, and writing it takes a few milliseconds that a stranger could measure.
+  const pause = new Promise((resolve) => setTimeout(resolve, 500));
   await auth.api.requestPasswordReset({ body: { email } });
+  await pause;
   return { sentence: 'If this address has an account, a link is on its way. It works once, for an hour.' };
 }
 
@@ -137,6 +143,8 @@ export async function confirmSecondFactor(headers: Headers, person: Person, code
     throw new AppError('invalid', 'The code is not right. Check the clock of the device and try the next code.', {
       field: 'code',
     });
+  // Spent: the same code must not sign anybody in while it still stands on the device.
+  await takeTurn(usedCode(person.id, code), 1, usedCodeSeconds);
   return withCookies(answer, {});
 }
 

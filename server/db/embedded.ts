@@ -94,17 +94,37 @@ export async function openEmbedded(
     report.restoredCopy = await putCopyInPlace(at.pg, at.copies, copies);
     pg = await open(at.pg, {});
   }
-  await migrate(pg);
-  const journal = await Journal.open(at.journal);
-  report.replayed = await replay(pg, journal);
-  await pg.exec(
-    'CREATE TEMP TABLE journal_capture (n bigserial, tbl text, op text, row_json jsonb) ON COMMIT DELETE ROWS;' +
-      " SET kelvinleaf.journal = 'on';",
-  );
-  pg.journal = journal;
+  try {
+    await bringUpToDate(pg, at.journal, migrate, report);
+  } catch (error) {
+    // A refused database must not stay open: the next try would put a second one on the same files.
+    await pg.close();
+    throw error;
+  }
   await fs.writeFile(at.running, JSON.stringify({ boot: bootId(), pid: process.pid }));
   if (powerLost || report.restoredCopy) report.reason ??= 'The machine went down while the database was open.';
   return { pg, report };
+}
+
+async function bringUpToDate(
+  pg: JournaledPGlite,
+  journalFolder: string,
+  migrate: (pg: JournaledPGlite) => Promise<void>,
+  report: StartReport,
+): Promise<void> {
+  await migrate(pg);
+  const journal = await Journal.open(journalFolder);
+  try {
+    report.replayed = await replay(pg, journal);
+    await pg.exec(
+      'CREATE TEMP TABLE journal_capture (n bigserial, tbl text, op text, row_json jsonb) ON COMMIT DELETE ROWS;' +
+        " SET kelvinleaf.journal = 'on';",
+    );
+  } catch (error) {
+    await journal.close();
+    throw error;
+  }
+  pg.journal = journal;
 }
 
 async function open(folder: string, options: Pick<PGliteOptions, 'loadDataDir'>): Promise<JournaledPGlite> {

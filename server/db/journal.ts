@@ -38,6 +38,7 @@ export class Journal {
 
   static async open(folder: string): Promise<Journal> {
     await fs.mkdir(folder, { recursive: true, mode: 0o700 });
+    await syncFolder(path.dirname(folder));
     const segments = await listSegments(folder);
     let next = 1;
     let name = segmentName(1);

@@ -3,6 +3,9 @@ import { documentText } from '@/lib/document/text';
 import type { DocumentJson, NodeJson } from '@/lib/document/json';
 import type { VersionRecord } from '@/lib/document/version';
 
+// Bidirectional controls, zero-width space, word joiner and byte-order mark; not the joiners that scripts and emoji need.
+const misleadingCharacters = /[\u200b\u200e\u200f\u202a-\u202e\u2060-\u2064\u2066-\u2069\ufeff]/g;
+
 /** Sentences about what is unfinished in a version; they warn and do not forbid. */
 export function unfinished(record: VersionRecord, attached: { id: string; fileName: string }[]): string[] {
   const doc = record.document as DocumentJson;
@@ -28,6 +31,12 @@ export function unfinished(record: VersionRecord, attached: { id: string; fileNa
   for (const file of attached) {
     if (!placed.has(file.id))
       warnings.push(`The file ${file.fileName} was uploaded to this entry and is not in the text.`);
+  }
+  const misleading = `${record.title} ${documentText(doc)}`.match(misleadingCharacters)?.length ?? 0;
+  if (misleading > 0) {
+    warnings.push(
+      `The text holds ${misleading} invisible or direction-changing characters: it may read otherwise than it is stored.`,
+    );
   }
   for (const block of doc.content ?? []) {
     if (block.type === 'caution' && !block.attrs?.acknowledgedAt)

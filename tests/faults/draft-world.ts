@@ -2,7 +2,7 @@ import { vi } from 'vitest';
 import type { DraftPorts, KeptDraft, SaveReply, Sending } from '@/lib/draft/contract';
 import { DraftSaver } from '@/lib/draft/saver';
 import type { DocumentJson } from '@/lib/document/json';
-import { clockTime } from '@/lib/document/nodes/log-line';
+import { clockTime } from '@/lib/document/clock-time';
 import type { DraftDto } from '@/lib/schemas/entry';
 
 export const person = { id: 'p1', name: 'Tomas Reinholt', initials: 'TR' };

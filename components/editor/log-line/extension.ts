@@ -2,7 +2,8 @@ import type { Editor } from '@tiptap/core';
 import { TextSelection } from '@tiptap/pm/state';
 import { ReactNodeViewRenderer } from '@tiptap/react';
 import { newBlockId } from '@/lib/document/block-id';
-import { clockTime, logLine } from '@/lib/document/nodes/log-line';
+import { clockTime } from '@/lib/document/clock-time';
+import { logLine } from '@/lib/document/nodes/log-line';
 import { LogLineView } from './view';
 
 /** Puts a log line with the present time at the cursor: in place of an empty paragraph, else after the present block. */

@@ -8,11 +8,16 @@ import type { SheetStore } from './sheet-store';
 /** What the provenance column shows: a value or trace, or the block that the cursor stands in. */
 export type Focus = { kind: 'value' | 'trace' | 'block'; id: string; blockId: string | null; quote: string };
 
+/** Results of a sheet's values, whether a version has bound them or they are recalculated. */
+export type SheetResults = Pick<SheetStore, 'subscribe' | 'result' | 'results'>;
+
 export type SheetContextValue = {
   entryId: string;
   mode: 'write' | 'read';
   person: PersonDto | null;
-  store: SheetStore;
+  store: SheetResults;
+  /** Recalculates while the entry is written; null where a version is read. */
+  live: SheetStore | null;
   traces: ReadonlyMap<string, TraceDto>;
   focus: Focus | null;
   setFocus: (focus: Focus | null) => void;
@@ -34,7 +39,7 @@ export function useResult(id: string): ValueResult | undefined {
   return useSyncExternalStore(
     store.subscribe,
     () => store.result(id),
-    () => undefined,
+    () => store.result(id),
   );
 }
 

@@ -5,7 +5,8 @@ import { sampleTrace } from '@/lib/document/sample';
 import { evaluateSheet } from '@/lib/expression/evaluate';
 import type { ValueResult } from '@/lib/expression/contract';
 import type { TraceDto } from '@/lib/schemas/entry';
-import { longestLocalTrace, SheetStore, type SheetPorts } from './sheet-store';
+import { SheetStore, type SheetPorts } from './sheet-store';
+import { longestLocalTrace } from './trace-source';
 
 const cell = (id: string, source: string): NodeJson => ({
   type: 'paragraph',

@@ -1,13 +1,12 @@
 import type { Node as ProseMirrorNode } from '@tiptap/pm/model';
 import type { TraceNodeAttributes } from '@/lib/document/attributes';
 import { sameDocument } from '@/lib/document/same';
-import type { CellSource, DerivedColumn, RawColumn, Sheet, SheetInput, ValueResult } from '@/lib/expression/contract';
+import type { CellSource, DerivedColumn, Sheet, SheetInput, ValueResult } from '@/lib/expression/contract';
 import type { TraceDto } from '@/lib/schemas/entry';
 import { ColumnCache } from './columns';
 import { gather, type Gathered } from './gather';
+import { longestLocalTrace, traceSource } from './trace-source';
 
-/** Above this many rows a column is not sent to the browser; the server evaluates what depends on it. */
-export const longestLocalTrace = 2_000_000;
 const remoteRest = 400;
 
 export type RemoteBody = {
@@ -129,28 +128,13 @@ export class SheetStore {
     return known ? shown : [...shown, { ...preview, unit: null, digits: null }];
   }
 
-  private columnOf(trace: TraceDto | undefined, index: number): RawColumn {
-    if (!trace) return 'pending';
-    if (trace.state === 'unreadable') return { error: trace.problem ?? 'The file could not be read as a trace.' };
-    if (trace.state === 'received' || trace.rows > longestLocalTrace) return 'pending';
-    return this.columns.column(trace.id, trace.sha256, index);
-  }
-
   private evaluate(): void {
     const cells = this.cells();
-    const traces = this.gathered.traces.map((node) => {
-      const trace = this.traces.get(node.traceId);
-      return {
-        traceId: node.traceId,
-        handle: node.handle,
-        fileName: trace?.fileName ?? '',
-        digest: trace?.sha256 ?? node.traceId,
-        rows: trace?.rows ?? 0,
-        settings: node.settings,
-        spans: node.spans,
-        column: (index: number) => this.columnOf(trace, index),
-      };
-    });
+    const traces = this.gathered.traces.map((node) =>
+      traceSource(node, this.traces.get(node.traceId), (trace, index) =>
+        this.columns.column(trace.id, trace.sha256, index),
+      ),
+    );
     const start = performance.now();
     this.sheet = this.ports.evaluate({ cells, traces }, this.sheet ?? undefined);
     this.lastDuration = performance.now() - start;

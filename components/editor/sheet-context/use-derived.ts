@@ -9,9 +9,10 @@ const same = (a: DerivedValues[], b: DerivedValues[]) =>
   a.every(({ symbol, unit, values }, i) => symbol === b[i].symbol && unit === b[i].unit && values === b[i].values);
 
 /** Columns that values of the entry have made of a trace, by their name within it (`P` of `t1.P`). */
-export function useDerived(store: SheetStore, handle: string): DerivedValues[] {
+export function useDerived(store: SheetStore | null, handle: string): DerivedValues[] {
   const [derived, setDerived] = useState<DerivedValues[]>([]);
   useEffect(() => {
+    if (!store) return;
     const read = () => {
       const next = store
         .columnsOf(handle)

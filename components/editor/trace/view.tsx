@@ -1,18 +1,18 @@
 'use client';
 
 import { NodeViewWrapper, type ReactNodeViewProps } from '@tiptap/react';
-import Link from 'next/link';
 import type { TraceNodeAttributes } from '@/lib/document/attributes';
 import { useSheet, useTrace } from '@/components/editor/sheet-context/context';
 import { useDerived } from '@/components/editor/sheet-context/use-derived';
+import { TraceFoot } from '@/components/trace/trace-foot';
 import { TracePanel } from '@/components/trace/trace-panel';
 
 /** A trace in the text: its plot, and below it handle, file, size and digest. */
 export function TraceView({ node, editor, selected, updateAttributes }: ReactNodeViewProps) {
   const attributes = node.attrs as TraceNodeAttributes;
   const file = useTrace(attributes.traceId);
-  const { setFocus, focus, mode, store } = useSheet();
-  const derived = useDerived(store, attributes.handle);
+  const { setFocus, focus, mode, live } = useSheet();
+  const derived = useDerived(live, attributes.handle);
   const writable = mode === 'write' && editor.isEditable;
   const choose = () => setFocus({ kind: 'trace', id: attributes.id, blockId: attributes.id, quote: attributes.handle });
   return (
@@ -33,24 +33,7 @@ export function TraceView({ node, editor, selected, updateAttributes }: ReactNod
           onAttributes={writable ? (part) => updateAttributes(part) : undefined}
         />
       ) : null}
-      <p className="trace-foot">
-        <strong className="figures">{attributes.handle}</strong>
-        {file ? (
-          <>
-            <Link href={`/traces/${encodeURIComponent(file.id)}`} title="The trace on a page of its own">
-              {file.fileName}
-            </Link>
-            {file.state === 'parsed' ? (
-              <span>
-                {file.columns.length} columns, {file.rows.toLocaleString('en').replaceAll(',', '\u2009')} rows
-              </span>
-            ) : null}
-            <span className="trace-digest figures">digest {file.sha256.slice(0, 8)}</span>
-          </>
-        ) : (
-          <span>The file is being fetched.</span>
-        )}
-      </p>
+      <TraceFoot handle={attributes.handle} file={file} />
     </NodeViewWrapper>
   );
 }

@@ -9,7 +9,7 @@ type Props = Draft & { id: string; onCommit: (draft: Draft) => void; onLeave: ()
 
 /** The line of a value while it is written: Enter or leaving the field commits, Escape goes back. */
 export function ValueField({ id, source, unit, digits, onCommit, onLeave }: Props) {
-  const { store } = useSheet();
+  const { live } = useSheet();
   const [draft, setDraft] = useState<Draft>({ source, unit, digits });
   const result = useResult(id);
   const box = useRef<HTMLSpanElement>(null);
@@ -18,12 +18,12 @@ export function ValueField({ id, source, unit, digits, onCommit, onLeave }: Prop
   const noteId = useId();
 
   const ready = useFieldFocus(line);
-  useEffect(() => () => store.setPreview(id, null), [store, id]);
+  useEffect(() => () => live?.setPreview(id, null), [live, id]);
 
   const finish = (act: () => void) => {
     if (done.current) return;
     done.current = true;
-    store.setPreview(id, null);
+    live?.setPreview(id, null);
     act();
   };
   const typed = draft.source.trim() !== '';
@@ -61,7 +61,7 @@ export function ValueField({ id, source, unit, digits, onCommit, onLeave }: Prop
         size={Math.min(Math.max(draft.source.length + 1, 20), 60)}
         onChange={(event) => {
           setDraft({ ...draft, source: event.target.value });
-          store.setPreview(id, event.target.value.trim() === '' ? null : event.target.value);
+          live?.setPreview(id, event.target.value.trim() === '' ? null : event.target.value);
         }}
       />
       <span className="value-panel">

@@ -2,11 +2,11 @@
 
 import { NodeViewWrapper, type ReactNodeViewProps } from '@tiptap/react';
 import { useId } from 'react';
-import { valueLine } from '@/lib/document/nodes/value';
+import { valueLine } from '@/lib/document/value-line';
 import { useOpening } from '@/components/editor/opening';
 import { useResult, useSheet } from '@/components/editor/sheet-context/context';
-import { SymbolMath } from './symbol-math';
 import { ValueField } from './value-field';
+import { ValueText } from './value-text';
 
 /** A value in the text: symbol and result, underlined; opens in place where the entry may be written. */
 export function ValueView({ node, editor, getPos, selected, updateAttributes, deleteNode }: ReactNodeViewProps) {
@@ -74,14 +74,7 @@ export function ValueView({ node, editor, getPos, selected, updateAttributes, de
         choose();
       }}
     >
-      {error || !shown ? (
-        <span className="figures">{source}</span>
-      ) : (
-        <>
-          {symbol ? <SymbolMath symbol={symbol} equals /> : null}
-          <span className="figures value-result">{shown}</span>
-        </>
-      )}
+      <ValueText source={source} shown={error ? null : shown} symbol={symbol} />
       {result?.state === 'pending' ? <span className="value-pending"> calculating</span> : null}
       {error ? (
         <span id={problemId} className="value-problem">

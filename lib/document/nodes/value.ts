@@ -1,5 +1,6 @@
 import { Node } from '@tiptap/core';
 import { valueNodeSchema } from '@/lib/document/attributes';
+import { valueLine } from '@/lib/document/value-line';
 import { attributeRule } from './attribute-rule';
 
 const shape = valueNodeSchema.shape;
@@ -24,12 +25,3 @@ export const value = Node.create({
   ],
   renderText: ({ node }) => valueLine(node.attrs.source, node.attrs.shown),
 });
-
-/** `P_esc = 0.9191(47)` where a result is known, else the line as typed. */
-export function valueLine(source: unknown, shown: unknown): string {
-  const line = typeof source === 'string' ? source : '';
-  if (typeof shown !== 'string' || shown === '') return line;
-  const cut = line.indexOf('=');
-  const symbol = cut > 0 ? line.slice(0, cut).trim() : '';
-  return symbol ? `${symbol} = ${shown}` : shown;
-}

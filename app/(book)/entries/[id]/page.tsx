@@ -1,6 +1,7 @@
 import type { Metadata } from 'next';
 import { EntryActions } from '@/components/entry/entry-actions';
 import { EntrySheet } from '@/components/entry/entry-sheet';
+import { ReadingText } from '@/components/reading/reading-text';
 import { pageAccess } from '@/server/access/page';
 import { readDraft } from '@/server/entries/draft-service';
 import { entryChoices, readEntry } from '@/server/entries/service';
@@ -23,6 +24,7 @@ export default async function EntryPage({ params }: Params) {
   const draft = entry.may.write ? await readDraft(id) : null;
   // A struck-out draft that was never cut is still read by its members.
   const version = draft ? null : entry.head ? await readVersion(id, entry.head.seq) : null;
+  const person = toPersonDto(scope.person);
   return (
     <>
       <EntryActions
@@ -34,7 +36,8 @@ export default async function EntryPage({ params }: Params) {
         entry={entry}
         draft={draft}
         version={version}
-        person={toPersonDto(scope.person)}
+        text={version ? <ReadingText entry={entry} version={version} person={person} /> : null}
+        person={person}
         build={env().buildId}
       />
     </>

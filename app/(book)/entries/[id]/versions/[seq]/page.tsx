@@ -1,6 +1,7 @@
 import type { Metadata } from 'next';
 import Link from 'next/link';
 import { EntrySheet } from '@/components/entry/entry-sheet';
+import { ReadingText } from '@/components/reading/reading-text';
 import { AttentionSentence } from '@/components/ui/sentence';
 import { pageAccess } from '@/server/access/page';
 import { readEntry } from '@/server/entries/service';
@@ -18,6 +19,7 @@ export default async function VersionPage({ params }: { params: Promise<{ id: st
   if (!Number.isInteger(number) || number < 1 || number > scope.entry.headSeq) notFound();
   const version = await readVersion(id, number);
   const entry = await readEntry(scope);
+  const person = toPersonDto(scope.person);
   return (
     <>
       <AttentionSentence>
@@ -27,7 +29,8 @@ export default async function VersionPage({ params }: { params: Promise<{ id: st
         entry={entry}
         draft={null}
         version={version}
-        person={toPersonDto(scope.person)}
+        text={<ReadingText entry={entry} version={version} person={person} />}
+        person={person}
         build={env().buildId}
       />
     </>
