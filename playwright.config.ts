@@ -31,7 +31,8 @@ export default defineConfig({
     },
   },
   webServer: {
-    command: 'node server/commands/start.mjs',
+    // Every run begins with the demonstration notebook as it is loaded first.
+    command: `node -e "require('node:fs').rmSync('test-results/data', { recursive: true, force: true })" && node server/commands/start.mjs`,
     url: `http://localhost:${port}/sign-in`,
     timeout: 300_000,
     reuseExistingServer: false,

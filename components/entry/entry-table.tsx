@@ -38,7 +38,11 @@ export function EntryTable({
       key: 'title',
       title: 'Title',
       value: (row) => row.title,
-      cell: (row) => <Link href={`/entries/${row.id}`}>{row.title}</Link>,
+      cell: (row) => (
+        <Link href={`/entries/${row.id}`} className="block min-w-40">
+          {row.title}
+        </Link>
+      ),
     },
     {
       key: 'date',

@@ -1,7 +1,7 @@
 'use client';
 
 import type { Editor, Extensions } from '@tiptap/core';
-import { NodeSelection } from '@tiptap/pm/state';
+import { NodeSelection, Selection } from '@tiptap/pm/state';
 import type { Node as ProseMirrorNode } from '@tiptap/pm/model';
 import { useEditor } from '@tiptap/react';
 import { useEffect, useRef } from 'react';
@@ -96,6 +96,7 @@ export function useEntryEditor({ extensions, doc, editable, store, label, onChan
       },
     },
     onCreate: ({ editor: created }) => {
+      putCursorInText(created);
       last.current = created.state.doc;
       store.setDocument(created.state.doc);
     },
@@ -119,7 +120,19 @@ export function useEntryEditor({ extensions, doc, editable, store, label, onChan
   return editor;
 }
 
+/**
+ * A text that opens with a caution or a trace would have that block chosen, and the first letter typed after Tab would take its
+ * place. The cursor begins in the first line of words instead.
+ */
+function putCursorInText(editor: Editor): void {
+  const { selection, doc, tr } = editor.state;
+  if (!(selection instanceof NodeSelection)) return;
+  const first = Selection.findFrom(doc.resolve(0), 1, true);
+  if (first) editor.view.dispatch(tr.setSelection(first).setMeta('addToHistory', false));
+}
+
 /** Puts another text under the editor (restored, merged, taken over) without it counting as typing. */
 export function replaceText(editor: Editor, doc: DocumentJson): void {
   editor.commands.setContent(doc, { emitUpdate: false });
+  putCursorInText(editor);
 }

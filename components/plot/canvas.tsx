@@ -51,7 +51,7 @@ function uplotAxis({ label, unit, range, log }: Axis, vertical: boolean): uPlot.
     labelSize: 22,
     splits: (plot, _axis, low, high) => {
       const length = (vertical ? plot.bbox.height : plot.bbox.width) / devicePixelRatio;
-      const count = Math.max(2, Math.floor(length / (vertical ? 45 : 90)));
+      const count = Math.max(vertical ? 2 : 3, Math.floor(length / (vertical ? 45 : 80)));
       texts.clear();
       return (log ? logTicks(low, high, count) : linearTicks(low * scaled, high * scaled, count)).map(
         ({ value, text }) => {

@@ -29,6 +29,8 @@ type Props = {
   /** Left out where spans are only shown. */
   onSpans?: (spans: Span[]) => void;
   height?: number;
+  /** Shows the tools at once; in a text they are folded, so that the plot and not its switches is what one reads. */
+  toolsOpen?: boolean;
 };
 
 /** The first sensible view of a trace: the first column against the others' first. */
@@ -39,7 +41,17 @@ export function firstView(columns: { symbol: string }[]): TraceView {
 }
 
 /** A plot of columns against one another: zoom, move, read off, name spans, save; all of it by keyboard, all of it in words too. */
-export function TracePlot({ title, fileName, provider, view, onView, spans, onSpans, height = 320 }: Props) {
+export function TracePlot({
+  title,
+  fileName,
+  provider,
+  view,
+  onView,
+  spans,
+  onSpans,
+  height = 320,
+  toolsOpen = false,
+}: Props) {
   const id = useId();
   const frame = useRef<HTMLDivElement>(null);
   const canvas = useRef<HTMLCanvasElement | null>(null);
@@ -143,17 +155,6 @@ export function TracePlot({ title, fileName, provider, view, onView, spans, onSp
       <figcaption id={`${id}-title`} className="sr-only">
         {title}: {describe(data.y, data.x, provider.rows)}
       </figcaption>
-      <PlotControls
-        columns={provider.columns}
-        view={view}
-        onView={onView}
-        mode={mode}
-        onMode={setMode}
-        mayNameSpans={onSpans !== undefined && shownX !== null}
-        zoomed={view.range !== null}
-        onZoom={zoom}
-        onReset={() => setRange(null)}
-      />
       <Legend symbols={data.y} unitOf={unitOf} />
       <div
         ref={frame}
@@ -197,45 +198,61 @@ export function TracePlot({ title, fileName, provider, view, onView, spans, onSp
         </p>
       ) : null}
       <ErrorSentence>{data.problem ?? saveProblem}</ErrorSentence>
-      <div className="flex flex-wrap gap-2 text-sm">
-        <button type="button" className="press !min-h-8" aria-expanded={table} onClick={() => setTable(!table)}>
-          data table
-        </button>
-        <button
-          type="button"
-          className="press !min-h-8"
-          disabled={!yRange}
-          onClick={saved(() => {
-            const plot = svg();
-            if (plot) saveSvg(plot, fileName);
-          })}
-        >
-          SVG
-        </button>
-        <button
-          type="button"
-          className="press !min-h-8"
-          disabled={!yRange}
-          onClick={saved(() =>
-            canvas.current
-              ? savePng(
-                  canvas.current,
-                  getComputedStyle(document.documentElement).getPropertyValue('--sheet') || '#ffffff',
-                  fileName,
-                )
-              : undefined,
-          )}
-        >
-          PNG
-        </button>
-        <button
-          type="button"
-          className="press !min-h-8"
-          onClick={saved(() => saveCsv(provider, data.x, data.y, fileName))}
-        >
-          CSV
-        </button>
-      </div>
+      <details className="plot-tools" open={toolsOpen || undefined}>
+        <summary className="min-h-6 cursor-pointer text-sm text-action">Plot tools</summary>
+        <div className="my-2 space-y-2">
+          <PlotControls
+            columns={provider.columns}
+            view={view}
+            onView={onView}
+            mode={mode}
+            onMode={setMode}
+            mayNameSpans={onSpans !== undefined && shownX !== null}
+            zoomed={view.range !== null}
+            onZoom={zoom}
+            onReset={() => setRange(null)}
+          />
+          <div className="flex flex-wrap gap-2 text-sm">
+            <button type="button" className="press !min-h-8" aria-expanded={table} onClick={() => setTable(!table)}>
+              data table
+            </button>
+            <button
+              type="button"
+              className="press !min-h-8"
+              disabled={!yRange}
+              onClick={saved(() => {
+                const plot = svg();
+                if (plot) saveSvg(plot, fileName);
+              })}
+            >
+              SVG
+            </button>
+            <button
+              type="button"
+              className="press !min-h-8"
+              disabled={!yRange}
+              onClick={saved(() =>
+                canvas.current
+                  ? savePng(
+                      canvas.current,
+                      getComputedStyle(document.documentElement).getPropertyValue('--sheet') || '#ffffff',
+                      fileName,
+                    )
+                  : undefined,
+              )}
+            >
+              PNG
+            </button>
+            <button
+              type="button"
+              className="press !min-h-8"
+              onClick={saved(() => saveCsv(provider, data.x, data.y, fileName))}
+            >
+              CSV
+            </button>
+          </div>
+        </div>
+      </details>
       {table ? <SampleTable provider={provider} caption={`Samples of ${title}`} /> : null}
       {onSpans && shownX !== null ? (
         <SpanEditor

@@ -29,6 +29,7 @@ export function TracePage({ trace, words }: { trace: TraceDto; words: TraceNodeA
       onView={setView}
       spans={words?.spans ?? []}
       height={460}
+      toolsOpen
     />
   );
 }

@@ -1,6 +1,6 @@
 import { expect, test, type Locator, type Page } from '@playwright/test';
 import { demoPassword, mailOf, watch, windowOf } from './people';
-import { below, saved, text, value } from './sheet';
+import { below, newEntry, saved, text, value } from './sheet';
 
 /** The main job without a mouse: only keys, and only places that Tab reaches. */
 
@@ -129,5 +129,17 @@ test('a witness finds it in the queue, reads, and countersigns', async ({ browse
   await expect(page.getByRole('button', { name: /^Countersign version/ })).toBeEnabled();
   await page.keyboard.press('Enter');
   await expect(page.getByText('signed and countersigned')).toBeVisible();
+  await context.close();
+});
+
+test('typing after Tab into a cooldown day leaves the caution where it stands', async ({ browser }) => {
+  const { context, page } = await windowOf(browser, 'tomas');
+  await newEntry(page, 'NB-03', 'The caution stays', 'Cooldown day');
+  await expect(page.getByRole('note', { name: 'Caution' })).toBeVisible();
+  await tabTo(page, text(page));
+  await page.keyboard.type('Typed at once. ');
+  await expect(text(page)).toContainText('Typed at once.');
+  await expect(page.getByRole('note', { name: 'Caution' })).toBeVisible();
+  await saved(page);
   await context.close();
 });

@@ -162,6 +162,7 @@ test('spans by typed numbers and by dragging, values with the right result and t
   await trace.getByRole('button', { name: 'Name this span' }).click();
   await expect(trace.getByRole('listitem').filter({ hasText: '16 to 44' })).toContainText('on');
 
+  await trace.getByText('Plot tools').click();
   await trace.getByLabel('drag marks a span').check();
   const area = trace.locator('.u-over');
   await area.scrollIntoViewIfNeeded();
@@ -206,8 +207,17 @@ test('spans by typed numbers and by dragging, values with the right result and t
   await expect(provenance.getByRole('heading', { name: 'Where this value comes from' })).toBeVisible();
   await expect(provenance).toContainText('(I_on - I_off)/(e*f)');
   const budget = provenance.getByRole('table');
-  await expect(budget.getByRole('row')).toHaveCount(3);
-  await expect(budget).toContainText('t1.I');
+  for (const [input, type] of [
+    ['I_on', 'A'],
+    ['I_off', 'A'],
+    ['f', 'exact'],
+    ['e, elementary charge', 'exact'],
+  ] as const) {
+    await expect(
+      budget.getByRole('row').filter({ has: page.getByRole('rowheader', { name: input, exact: true }) }),
+    ).toContainText(type);
+  }
+  await expect(provenance).toContainText('I_on: t1.I over on: 561 samples');
   await saved(page);
 });
 

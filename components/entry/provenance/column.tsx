@@ -33,7 +33,9 @@ export function ProvenanceColumn({ entry, text, stamps, written, names, onSign, 
       {focus?.blockId ? (
         <BlockProvenance stamp={stamps[focus.blockId]} written={written[focus.blockId]} names={names} />
       ) : null}
-      {!focus ? <p className="text-quiet">Choose a value, a trace or a paragraph to see where it comes from.</p> : null}
+      {!focus ? (
+        <p className="provenance-hint text-quiet">Choose a value, a trace or a paragraph to see where it comes from.</p>
+      ) : null}
       <ToCountersign entry={entry} onSign={onSign} />
       {children}
     </aside>

@@ -1,3 +1,4 @@
+import Link from 'next/link';
 import type { TraceNodeAttributes } from '@/lib/document/attributes';
 import type { TraceDto } from '@/lib/schemas/entry';
 
@@ -14,7 +15,9 @@ export function TraceProvenance({ node, file }: { node: TraceNodeAttributes; fil
       {file ? (
         <dl className="pairs">
           <dt>file</dt>
-          <dd>{file.fileName}</dd>
+          <dd>
+            <Link href={`/traces/${encodeURIComponent(file.id)}`}>{file.fileName}</Link>
+          </dd>
           <dt>received</dt>
           <dd>
             <time dateTime={file.receivedAt}>{file.receivedAt.slice(0, 19).replace('T', ' ')} UTC</time>,{' '}
