@@ -111,7 +111,15 @@ afterEach(() => {
 const write = (doc: DocumentJson, parts: Partial<EntryDto> = {}) =>
   render(
     <CommandProvider>
-      <EntrySheet entry={entry(parts)} draft={draft(doc)} version={null} text={null} person={tomas} build="b1" />
+      <EntrySheet
+        entry={entry(parts)}
+        draft={draft(doc)}
+        equations={{}}
+        version={null}
+        text={null}
+        person={tomas}
+        build="b1"
+      />
       <CommandMenu />
     </CommandProvider>,
   );
@@ -196,7 +204,7 @@ describe('writing', () => {
     fireEvent.change(await titleField(), { target: { value: 'Day three' } });
     const user = userEvent.setup();
     await user.click(await screen.findByRole('button', { name: 'Sign in again' }, { timeout: 3000 }));
-    const dialog = screen.getByRole('dialog');
+    const dialog = await screen.findByRole('dialog', undefined, { timeout: 10_000 });
     await user.type(within(dialog).getByLabelText('E-mail'), 'tomas@fjordheim.example');
     await user.type(within(dialog).getByLabelText('Password'), 'cold-finger-demo');
     await user.click(within(dialog).getByRole('button', { name: 'Sign in' }));
@@ -290,6 +298,7 @@ describe('reading', () => {
       <EntrySheet
         entry={shown}
         draft={null}
+        equations={{}}
         version={version}
         text={<ReadingText entry={shown} version={version} person={priya} />}
         person={priya}

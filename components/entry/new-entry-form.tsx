@@ -1,7 +1,7 @@
 'use client';
 
 import { useState } from 'react';
-import { clockTime } from '@/lib/document/nodes/log-line';
+import { clockTime } from '@/lib/document/clock-time';
 import { ActionForm } from '@/components/ui/action-form';
 import { Choice, Field } from '@/components/ui/field';
 
