@@ -1,9 +1,12 @@
 'use client';
 
-import { useEffect, useState, type ComponentType } from 'react';
+import { useEffect, useState } from 'react';
 import { ErrorSentence } from '@/components/ui/sentence';
-import type { CommandDialogs, Shown } from './command-dialogs';
+import { useFetched } from '@/components/ui/use-fetched';
+import type { Shown } from './command-dialogs';
 import './commands.css';
+
+const loadDialogs = () => import('./command-dialogs').then((module) => module.CommandDialogs);
 
 const isTyping = (target: EventTarget | null) =>
   target instanceof HTMLElement && (target.isContentEditable || /^(INPUT|TEXTAREA|SELECT)$/.test(target.tagName));
@@ -30,22 +33,10 @@ export function CommandMenu({ onOpenChange }: { onOpenChange?: (open: boolean) =
     };
   }, []);
   useEffect(() => onOpenChange?.(shown === 'menu'), [shown, onOpenChange]);
-  // By hand, not by React's lazy: where the network is away the page stays, and the next try fetches again.
-  const [Dialogs, setDialogs] = useState<ComponentType<Parameters<typeof CommandDialogs>[0]> | null>(null);
-  const [problem, setProblem] = useState<string | null>(null);
+  const { part: Dialogs, problem } = useFetched(shown !== null, loadDialogs);
   useEffect(() => {
-    if (shown === null || Dialogs) return;
-    import('./command-dialogs').then(
-      (module) => {
-        setDialogs(() => module.CommandDialogs);
-        setProblem(null);
-      },
-      () => {
-        setProblem('The menu could not be fetched. The page stays as it is; try again when the network is back.');
-        setShown(null);
-      },
-    );
-  }, [shown, Dialogs]);
+    if (problem) setShown(null);
+  }, [problem]);
   return (
     <>
       {problem ? (

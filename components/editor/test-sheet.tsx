@@ -62,7 +62,9 @@ export function TestSheet({ doc, extensions, store, mode = 'write', traces = [],
   }, [editor, onEditor]);
   useEffect(() => store.setTraces(files.values()), [store, files]);
   return (
-    <SheetProvider value={{ entryId: 'e1', mode, person, store, live: store, traces: files, focus, setFocus: take }}>
+    <SheetProvider
+      value={{ entryId: 'e1', mode, person, store, live: store, equations: {}, traces: files, focus, setFocus: take }}
+    >
       <EditorContent editor={editor} />
     </SheetProvider>
   );

@@ -111,7 +111,15 @@ afterEach(() => {
 const write = (doc: DocumentJson, parts: Partial<EntryDto> = {}) =>
   render(
     <CommandProvider>
-      <EntrySheet entry={entry(parts)} draft={draft(doc)} version={null} text={null} person={tomas} build="b1" />
+      <EntrySheet
+        entry={entry(parts)}
+        draft={draft(doc)}
+        equations={{}}
+        version={null}
+        text={null}
+        person={tomas}
+        build="b1"
+      />
       <CommandMenu />
     </CommandProvider>,
   );
@@ -188,15 +196,16 @@ describe('writing', () => {
         return { status: 401, body: { error: { code: 'signed_out', message: 'Signed out.' } } };
       if (url === '/api/session/renew') {
         signedIn = true;
-        return { status: 200, body: {} };
+        return { status: 200, body: { secondFactor: false } };
       }
+      if (url === '/api/session') return { status: 200, body: { person, serverTime: new Date().toISOString(), demo: false } };
       return ordinary(method, url, body);
     };
     write(simple('one'));
     fireEvent.change(await titleField(), { target: { value: 'Day three' } });
     const user = userEvent.setup();
     await user.click(await screen.findByRole('button', { name: 'Sign in again' }, { timeout: 3000 }));
-    const dialog = screen.getByRole('dialog');
+    const dialog = await screen.findByRole('dialog', undefined, { timeout: 10_000 });
     await user.type(within(dialog).getByLabelText('E-mail'), 'tomas@fjordheim.example');
     await user.type(within(dialog).getByLabelText('Password'), 'cold-finger-demo');
     await user.click(within(dialog).getByRole('button', { name: 'Sign in' }));
@@ -290,6 +299,7 @@ describe('reading', () => {
       <EntrySheet
         entry={shown}
         draft={null}
+        equations={{}}
         version={version}
         text={<ReadingText entry={shown} version={version} person={priya} />}
         person={priya}

@@ -14,6 +14,8 @@ export type EntrySheetProps = {
   entry: EntryDto;
   /** Given to whoever may write now; else null. */
   draft: DraftDto | null;
+  /** The draft's equations as the page has typeset them, by `equationKey`. */
+  equations: Record<string, string>;
   /** What is read when there is no draft to write: the head version, or an older one. */
   version: VersionContentDto | null;
   /** The version's text, rendered by the page: `<ReadingText>`. */
@@ -24,9 +26,18 @@ export type EntrySheetProps = {
 };
 
 /** The sheet of an entry: written by who may, else read as the version has bound it. */
-export function EntrySheet({ entry, draft, version, text, person, build }: EntrySheetProps) {
+export function EntrySheet({ entry, draft, equations, version, text, person, build }: EntrySheetProps) {
   if (draft && entry.may.write)
-    return <WritingSheet key={draft.entryId} entry={entry} draft={draft} person={person} build={build} />;
+    return (
+      <WritingSheet
+        key={draft.entryId}
+        entry={entry}
+        draft={draft}
+        equations={equations}
+        person={person}
+        build={build}
+      />
+    );
   if (version) return <ReadingSheet key={version.id} entry={entry} version={version} person={person} text={text} />;
   return (
     <p className="entry-empty">

@@ -22,6 +22,8 @@ type Props = {
 };
 
 const nothingWritten = {};
+/** Those of the text come typeset with it; what the provenance column shows is typeset when it is asked for. */
+const noEquations = {};
 
 /** A version's results never change. */
 function resultsOf(version: VersionContentDto): SheetResults {
@@ -64,7 +66,19 @@ export function ReadingSheet({ entry, version, person, text: rendered }: Props) 
   };
 
   return (
-    <SheetProvider value={{ entryId: entry.id, mode: 'read', person, store, live: null, traces, focus, setFocus }}>
+    <SheetProvider
+      value={{
+        entryId: entry.id,
+        mode: 'read',
+        person,
+        store,
+        live: null,
+        equations: noEquations,
+        traces,
+        focus,
+        setFocus,
+      }}
+    >
       <VersionProvider value={{ questions, onQuestion: changed, columns }}>
         <div className="entry">
           <article className="sheet" aria-label={`${entry.notebook.code} leaf ${entry.leaf}`}>

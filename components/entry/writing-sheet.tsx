@@ -13,30 +13,43 @@ import { textOfEditor } from '@/components/editor/editor-text';
 import { SheetProvider, type Focus } from '@/components/editor/sheet-context/context';
 import { Toolbar } from '@/components/editor/toolbar';
 import { useDraft } from '@/components/hooks/use-draft';
-import { sendFile } from '@/components/trace/send-file';
+import { ErrorSentence } from '@/components/ui/sentence';
+import { useFetched } from '@/components/ui/use-fetched';
 import { AttachmentList } from './attachment-list';
 import { Compare } from './compare';
 import { GutterNote } from './gutter-note';
 import { peopleOf } from './people';
 import { ProvenanceColumn } from './provenance/column';
-import { RenewDialog } from './renew-dialog';
 import { SaveLine } from './save-line';
 import { SheetHead } from './sheet-head';
-import { useAttachments } from './use-attachments';
+import { useAttachments, type SendFile } from './use-attachments';
 import { replaceText, useEntryEditor } from './use-entry-editor';
 import { useQuestions } from './use-questions';
 import { useSheetStore } from './use-sheet-store';
 import { useStampsShown } from './use-stamps-shown';
 import { WrittenQuestions } from './written-questions';
 
-type Props = { entry: EntryDto; draft: DraftDto; person: PersonDto; build: string };
+type Props = {
+  entry: EntryDto;
+  draft: DraftDto;
+  /** Equations of the draft as the server has typeset them, by `equationKey`. */
+  equations: Record<string, string>;
+  person: PersonDto;
+  build: string;
+};
+
+const loadRenewDialog = () => import('./renew-dialog').then((module) => module.RenewDialog);
+
+/** Hashing and sending are fetched with the first file. */
+const send: SendFile = async (...args) => (await import('@/components/trace/send-file')).sendFile(...args);
 
 /** An entry as it is written: editor, saving, files, provenance. */
-export function WritingSheet({ entry, draft: first, person, build }: Props) {
+export function WritingSheet({ entry, draft: first, equations, person, build }: Props) {
   const [title, setTitle] = useState(first.title);
   const [focus, setFocus] = useState<Focus | null>(null);
   const [comparing, setComparing] = useState(false);
   const [renewing, setRenewing] = useState(false);
+  const { part: Renew, problem: renewProblem } = useFetched(renewing, loadRenewDialog);
   const [traces, setTraces] = useState(() => new Map(entry.traces.map((trace) => [trace.id, trace])));
   const { questions, changed: questionChanged } = useQuestions(entry.questions);
   const store = useSheetStore(entry.id, traces);
@@ -59,7 +72,7 @@ export function WritingSheet({ entry, draft: first, person, build }: Props) {
   const { attachments, host, inputs, cancel, retry, pause, resume } = useAttachments({
     entryId: entry.id,
     editor: editorNow,
-    send: sendFile,
+    send,
     onTrace,
   });
   const hostNow = useRef(host);
@@ -160,7 +173,9 @@ export function WritingSheet({ entry, draft: first, person, build }: Props) {
   const old = leftOver[0];
 
   return (
-    <SheetProvider value={{ entryId: entry.id, mode: 'write', person, store, live: store, traces, focus, setFocus }}>
+    <SheetProvider
+      value={{ entryId: entry.id, mode: 'write', person, store, live: store, equations, traces, focus, setFocus }}
+    >
       <div className="entry">
         <article className="sheet" aria-label={`${entry.notebook.code} leaf ${entry.leaf}`}>
           <SheetHead
@@ -173,6 +188,7 @@ export function WritingSheet({ entry, draft: first, person, build }: Props) {
             }}
           />
           <SaveLine draft={draft} onCompare={() => setComparing(true)} onRenew={() => setRenewing(true)} />
+          <ErrorSentence>{renewing ? renewProblem : null}</ErrorSentence>
           {editor ? <Toolbar editor={editor} host={host} /> : null}
           {traceInput('trace', '')}
           {traceInput('picture', 'image/png,image/jpeg,image/gif,image/webp')}
@@ -226,7 +242,7 @@ export function WritingSheet({ entry, draft: first, person, build }: Props) {
           onSign={entry.may.sign ? () => void sign() : undefined}
         />
       </div>
-      <RenewDialog open={renewing} onOpenChange={setRenewing} person={person} onRenewed={draft.resume} />
+      {Renew ? <Renew open={renewing} onOpenChange={setRenewing} person={person} onRenewed={draft.resume} /> : null}
     </SheetProvider>
   );
 }

@@ -2,7 +2,8 @@
 
 import { useEffect, useId, useState } from 'react';
 import { ErrorSentence } from '@/components/ui/sentence';
-import { symbolSchema, type Span } from '@/lib/document/attributes';
+import type { Span } from '@/lib/document/attributes';
+import { isSymbol } from '@/lib/document/symbol';
 import { axisLabel } from '@/lib/plot/axis';
 
 type Props = {
@@ -50,7 +51,7 @@ export function SpanEditor({ spans, axis, unit, proposed, onSpans, onDone }: Pro
     const low = readNumber(from);
     const high = readNumber(to);
     const clash = spans.find((span) => span.name === name.trim() && span.axis !== axis);
-    if (!symbolSchema.safeParse(name.trim()).success)
+    if (!isSymbol(name.trim()))
       setProblem('A span needs a name of letters, digits and _, beginning with a letter: on, off, A.');
     else if (low === null || high === null) setProblem('Both ends of the span must be numbers.');
     else if (low === high) setProblem('The span is empty: its ends are equal.');

@@ -2,18 +2,19 @@
 
 import { lazy, Suspense, useCallback, useEffect, useId, useMemo, useRef, useState } from 'react';
 import { ErrorSentence } from '@/components/ui/sentence';
+import { useFetched } from '@/components/ui/use-fetched';
 import type { Span, TraceView } from '@/lib/document/attributes';
 import { axisLabel, sampleText } from '@/lib/plot/axis';
 import { seriesColour } from '@/lib/plot/palette';
 import type { PlotMode } from './canvas';
-import { saveCsv, savePng, saveSvg } from './exports';
 import { PlotControls } from './plot-controls';
 import type { PlotProvider } from './provider';
-import { SampleTable } from './sample-table';
 import { nearestPoint, panRange, type Range, xExtent, yExtent, zoomRange } from './scale';
 import { SpanEditor } from './span-editor';
 import { usePlotKeys } from './use-plot-keys';
 import { useViews } from './use-views';
+
+const loadTable = () => import('./sample-table').then((module) => module.SampleTable);
 
 // The drawing library is fetched when a plot is first shown.
 const PlotCanvas = lazy(async () => ({ default: (await import('./canvas')).PlotCanvas }));
@@ -60,6 +61,7 @@ export function TracePlot({
   const [cursor, setCursor] = useState<number | null>(null);
   const [proposed, setProposed] = useState<Range | null>(null);
   const [table, setTable] = useState(false);
+  const { part: SampleTable, problem: tableProblem } = useFetched(table, loadTable);
   const [saveProblem, setSaveProblem] = useState<string | null>(null);
 
   useEffect(() => {
@@ -140,10 +142,10 @@ export function TracePlot({
       series: data.views.map(({ x: xs, min, max }, i) => ({ label: data.y[i] ?? '', x: xs, min, max })),
       spans: drawnSpans,
     };
-  const saved = (action: () => Promise<void> | void) => async () => {
+  const saved = (action: (files: typeof import('./exports')) => Promise<void> | void) => async () => {
     try {
       setSaveProblem(null);
-      await action();
+      await action(await import('./exports'));
     } catch (error) {
       setSaveProblem(error instanceof Error ? error.message : String(error));
     }
@@ -197,7 +199,7 @@ export function TracePlot({
           The horizontal axis goes to and fro: one row of {step} is drawn. Zoom in to see every row.
         </p>
       ) : null}
-      <ErrorSentence>{data.problem ?? saveProblem}</ErrorSentence>
+      <ErrorSentence>{data.problem ?? saveProblem ?? tableProblem}</ErrorSentence>
       <details className="plot-tools" open={toolsOpen || undefined}>
         <summary className="min-h-6 cursor-pointer text-sm text-action">Plot tools</summary>
         <div className="my-2 space-y-2">
@@ -220,7 +222,7 @@ export function TracePlot({
               type="button"
               className="press !min-h-8"
               disabled={!yRange}
-              onClick={saved(() => {
+              onClick={saved(({ saveSvg }) => {
                 const plot = svg();
                 if (plot) saveSvg(plot, fileName);
               })}
@@ -231,7 +233,7 @@ export function TracePlot({
               type="button"
               className="press !min-h-8"
               disabled={!yRange}
-              onClick={saved(() =>
+              onClick={saved(({ savePng }) =>
                 canvas.current
                   ? savePng(
                       canvas.current,
@@ -246,14 +248,14 @@ export function TracePlot({
             <button
               type="button"
               className="press !min-h-8"
-              onClick={saved(() => saveCsv(provider, data.x, data.y, fileName))}
+              onClick={saved(({ saveCsv }) => saveCsv(provider, data.x, data.y, fileName))}
             >
               CSV
             </button>
           </div>
         </div>
       </details>
-      {table ? <SampleTable provider={provider} caption={`Samples of ${title}`} /> : null}
+      {table && SampleTable ? <SampleTable provider={provider} caption={`Samples of ${title}`} /> : null}
       {onSpans && shownX !== null ? (
         <SpanEditor
           spans={spans}

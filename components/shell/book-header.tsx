@@ -3,7 +3,6 @@
 import Link from 'next/link';
 import { usePathname } from 'next/navigation';
 import { FindButton } from '@/components/commands/command-menu';
-import { maySignOut } from '@/components/entry/may-sign-out';
 import { request } from '@/components/hooks/request';
 import { Mark } from '@/components/ui/stair';
 import { ThemeSwitch } from '@/components/ui/theme-switch';
@@ -87,6 +86,7 @@ export function BookHeader({
 
 function SignOut({ personId }: { personId: string }) {
   const leave = async () => {
+    const { maySignOut } = await import('@/components/entry/may-sign-out');
     if (!(await maySignOut(personId))) return;
     await request('POST', '/api/auth/sign-out', {});
     window.location.assign('/sign-in');

@@ -1,4 +1,5 @@
-import { symbolSchema, type TraceSettings } from '@/lib/document/attributes';
+import type { TraceSettings } from '@/lib/document/attributes';
+import { isSymbol } from '@/lib/document/symbol';
 import { parseUnit } from '@/lib/units/parse';
 
 /** What a trace's settings are before its author has said anything: names, symbols and units from the file, nothing guessed. */
@@ -6,7 +7,7 @@ export function firstSettings(columns: { name: string; symbol: string; unit: str
   return {
     columns: columns.slice(0, 256).map(({ name, symbol, unit }, i) => ({
       name: name.slice(0, 300),
-      symbol: symbolSchema.safeParse(symbol).success ? symbol : `c${i + 1}`,
+      symbol: isSymbol(symbol) ? symbol : `c${i + 1}`,
       unit: unit === null ? null : unit.slice(0, 60),
       gain: null,
       offset: null,
@@ -28,7 +29,7 @@ export function settingsProblems({ columns }: TraceSettings): SettingsProblems {
   const problems: SettingsProblems = {};
   const taken = new Map<string, number>();
   columns.forEach(({ symbol, unit }, i) => {
-    if (!symbolSchema.safeParse(symbol).success) {
+    if (!isSymbol(symbol)) {
       problems[`columns.${i}.symbol`] = 'A symbol is letters, digits and _, beginning with a letter: I, V_exit.';
     } else if (taken.has(symbol)) {
       problems[`columns.${i}.symbol`] = `The column ${(taken.get(symbol) as number) + 1} has this symbol already.`;

@@ -1,7 +1,8 @@
 import type { FileRouter } from 'uploadthing/server';
 import { request } from '@/components/hooks/request';
 import { AppError } from '@/lib/errors/app-error';
-import { maxPictureBytes, maxTraceBytes, type UploadInput, type UploadOutcome } from '@/lib/schemas/upload';
+import type { UploadInput, UploadOutcome } from '@/lib/schemas/upload';
+import { maxPictureBytes, maxTraceBytes } from '@/lib/schemas/upload-limits';
 import { fileDigest } from './digest';
 import { forgetUpload, uploadIdFor, type FileMark } from './unfinished';
 

@@ -17,7 +17,7 @@ import { checkStructure, refuse } from './structure-check';
 
 export { documentLimits } from './structure-check';
 
-const id = blockIdSchema.nullable().optional();
+const id = z.nullish(blockIdSchema);
 const span = z.number().int().min(1).max(widestSpan).optional();
 const cell = z
   .object({
@@ -31,7 +31,7 @@ const onlyId = z.object({ id }).strict();
 const none = z.object({}).strict();
 
 /** Attributes by node type. A node that is not listed does not exist. */
-const attributesOf: Record<string, z.ZodType> = {
+const attributesOf: Record<string, z.core.$ZodType> = {
   doc: none,
   text: none,
   hardBreak: none,
@@ -56,7 +56,7 @@ const attributesOf: Record<string, z.ZodType> = {
   codeBlock: z.object({ id, language: z.string().max(60).nullable().optional() }).strict(),
   taskItem: z.object({ checked: z.boolean().optional() }).strict(),
   equation: equationNodeSchema,
-  equationBlock: equationNodeSchema.extend({ id }).strict(),
+  equationBlock: z.strictObject({ ...equationNodeSchema.shape, id }),
   logLine: logLineNodeSchema,
   caution: cautionNodeSchema,
   trace: traceNodeSchema,
@@ -64,7 +64,7 @@ const attributesOf: Record<string, z.ZodType> = {
   picture: pictureNodeSchema,
 };
 
-const attributesOfMark: Record<string, z.ZodType> = {
+const attributesOfMark: Record<string, z.core.$ZodType> = {
   bold: none,
   italic: none,
   strike: none,
@@ -76,8 +76,8 @@ const attributesOfMark: Record<string, z.ZodType> = {
 
 const has = (record: object, key: string) => Object.prototype.hasOwnProperty.call(record, key);
 
-function checkAttributes(place: string, what: string, schema: z.ZodType, attrs: unknown): void {
-  const outcome = schema.safeParse(attrs ?? {});
+function checkAttributes(place: string, what: string, schema: z.core.$ZodType, attrs: unknown): void {
+  const outcome = z.core.safeParse(schema, attrs ?? {});
   if (outcome.success) return;
   const issue = outcome.error.issues[0];
   const field = issue?.path.length ? `attribute “${issue.path.join('.')}”` : 'the attributes';

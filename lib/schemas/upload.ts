@@ -1,12 +1,9 @@
 import { z } from 'zod';
 
-/** What the browser says of the files it is about to send: one item per file, in the same order. */
-export const maxTraceBytes = 200_000_000;
-export const maxPictureBytes = 20_000_000;
-
 export const uploadIdSchema = z.string().regex(/^[A-Za-z0-9_-]{16,64}$/);
 export const sha256Schema = z.string().regex(/^[0-9a-f]{64}$/);
 
+/** What the browser says of the files it is about to send: one item per file, in the same order. */
 export const uploadInputSchema = z
   .object({
     entryId: z.uuid(),

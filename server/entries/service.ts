@@ -40,7 +40,7 @@ export const newEntrySchema = z
     layout: z.string().max(60),
     requestKey: z.uuid(),
     /** The writer's clock, with its zone: the time that the layout's blocks carry. The server's own where left out. */
-    writtenAt: clockTimeSchema.optional(),
+    writtenAt: z.optional(clockTimeSchema),
   })
   .strict();
 

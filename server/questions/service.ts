@@ -27,7 +27,7 @@ const plainTextSchema = (longest: number, empty: string) =>
 export const askSchema = z
   .object({
     versionDigest: z.string().length(64),
-    blockId: blockIdSchema.nullable(),
+    blockId: z.nullable(blockIdSchema),
     quote: z.string().max(500),
     text: plainTextSchema(4000, 'Write the question first.'),
     requestKey: z.uuid().optional(),

@@ -5,14 +5,8 @@ import { createUploadthing, UploadThingError, UTFiles, type FileRouter } from 'u
 import { z } from 'zod';
 import { AppError } from '@/lib/errors/app-error';
 import { initialsOf } from '@/lib/schemas/person';
-import {
-  maxPictureBytes,
-  maxTraceBytes,
-  sha256Schema,
-  uploadIdSchema,
-  uploadInputSchema,
-  type UploadOutcome,
-} from '@/lib/schemas/upload';
+import { sha256Schema, uploadIdSchema, uploadInputSchema, type UploadOutcome } from '@/lib/schemas/upload';
+import { maxPictureBytes, maxTraceBytes } from '@/lib/schemas/upload-limits';
 import { cleanFileName } from '@/lib/trace-format/file-name';
 import { findPerson, type Person } from '@/server/access/person';
 import { authorise } from '@/server/access/scope';

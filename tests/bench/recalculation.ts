@@ -1,9 +1,8 @@
+import type { BenchRow } from './csv';
 import { evaluateSheet } from '@/lib/expression/evaluate';
 import type { CellSource, Sheet, TraceSource } from '@/lib/expression/contract';
 import { autoregressive } from '@/lib/quantity/example-noise';
 import { cellsOf, traceOf } from '@/lib/expression/example-trace';
-
-export type BenchRow = { name: string; ours: number; peer: number | null; ratio: number | null; n: number };
 
 /** An entry of `count` values: a frequency that all the others hang on, means of a trace, and chains of quotients. */
 function entry(count: number): { cells: CellSource[]; traces: TraceSource[] } {
@@ -60,7 +59,14 @@ export async function recalculation(): Promise<BenchRow[]> {
   const rows: BenchRow[] = [];
   for (const count of [50, 200, 800]) {
     const ours = keystroke(entry(count), 31);
-    rows.push({ name: `${count} dependent values after one keystroke, ms`, ours, peer: null, ratio: null, n: count });
+    rows.push({
+      name: `${count} dependent values after one keystroke, ms`,
+      ours,
+      peer: null,
+      ratio: null,
+      n: count,
+      note: 'no general-purpose peer recalculates quantities with budgets',
+    });
   }
   return Promise.resolve(rows);
 }

@@ -5,7 +5,7 @@ import { useId, useRef, useState } from 'react';
 import { useOpening } from '@/components/editor/opening';
 import { useFieldFocus } from '@/components/editor/use-field-focus';
 import { useSheet } from '@/components/editor/sheet-context/context';
-import { Typeset } from './typeset';
+import { TypesetHere } from './typeset-here';
 
 /** Equation in the line or on its own; its TeX opens in place. */
 export function EquationView({ node, editor, getPos, selected, updateAttributes, deleteNode }: ReactNodeViewProps) {
@@ -35,7 +35,7 @@ export function EquationView({ node, editor, getPos, selected, updateAttributes,
       data-id={node.attrs.id ?? undefined}
       onDoubleClick={() => writable && setOpen(true)}
     >
-      {open ? <TexField tex={tex} display={display} onDone={leave} /> : <Typeset tex={tex} display={display} />}
+      {open ? <TexField tex={tex} display={display} onDone={leave} /> : <TypesetHere tex={tex} display={display} />}
       {writable && selected && !open ? (
         <button type="button" className="small-press" onClick={() => setOpen(true)}>
           Edit TeX
@@ -86,7 +86,7 @@ function TexField({ tex, display, onDone }: { tex: string; display: boolean; onD
       <span id={hint} className="text-quiet">
         {display ? 'Ctrl+Enter keeps it, Escape goes back.' : 'Enter keeps it, Escape goes back.'}
       </span>
-      {text.trim() ? <Typeset tex={text} display={display} /> : null}
+      {text.trim() ? <TypesetHere tex={text} display={display} /> : null}
     </span>
   );
 }

@@ -18,6 +18,8 @@ export type SheetContextValue = {
   store: SheetResults;
   /** Recalculates while the entry is written; null where a version is read. */
   live: SheetStore | null;
+  /** Markup of equations that came with the page, by `equationKey`. */
+  equations: Readonly<Record<string, string>>;
   traces: ReadonlyMap<string, TraceDto>;
   focus: Focus | null;
   setFocus: (focus: Focus | null) => void;

@@ -1,12 +1,8 @@
 'use client';
 
-import { lazy, Suspense } from 'react';
 import type { BudgetLine, ValueResult } from '@/lib/expression/contract';
+import { TypesetHere } from '@/components/editor/equation/typeset-here';
 import { SymbolMath } from '@/components/editor/value/symbol-math';
-
-const Typeset = lazy(() =>
-  import('@/components/editor/equation/typeset').then((module) => ({ default: module.Typeset })),
-);
 
 /** Two significant digits, as an uncertainty is given (GUM 7.2.6), without an exponent that programs write. */
 export function twoDigits(number: number): string {
@@ -42,11 +38,7 @@ export function ValueProvenance({
           <span className="figures">{result.text ?? (result.state === 'pending' ? 'calculating' : '')}</span>
         </p>
         <p className="figures provenance-source">{source}</p>
-        {result.expressionTex ? (
-          <Suspense fallback={null}>
-            <Typeset tex={result.expressionTex} display={false} />
-          </Suspense>
-        ) : null}
+        {result.expressionTex ? <TypesetHere tex={result.expressionTex} display={false} /> : null}
         {result.error ? <p className="text-error">{result.error.message}</p> : null}
         {result.state === 'ok' && result.u !== null ? (
           <p>

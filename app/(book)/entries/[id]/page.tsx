@@ -2,6 +2,7 @@ import type { Metadata } from 'next';
 import { EntryActions } from '@/components/entry/entry-actions';
 import { EntrySheet } from '@/components/entry/entry-sheet';
 import { ReadingText } from '@/components/reading/reading-text';
+import { typesetAll } from '@/lib/document/typeset-all';
 import { pageAccess } from '@/server/access/page';
 import { readDraft } from '@/server/entries/draft-service';
 import { entryChoices, readEntry } from '@/server/entries/service';
@@ -35,6 +36,7 @@ export default async function EntryPage({ params }: Params) {
       <EntrySheet
         entry={entry}
         draft={draft}
+        equations={draft ? typesetAll(draft.doc) : {}}
         version={version}
         text={version ? <ReadingText entry={entry} version={version} person={person} /> : null}
         person={person}

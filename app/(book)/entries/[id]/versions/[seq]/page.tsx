@@ -28,6 +28,7 @@ export default async function VersionPage({ params }: { params: Promise<{ id: st
       <EntrySheet
         entry={entry}
         draft={null}
+        equations={{}}
         version={version}
         text={<ReadingText entry={entry} version={version} person={person} />}
         person={person}
