@@ -16,9 +16,7 @@ export default {
       // What answers outside the routes' own wrapper too: unknown addresses of the API, and the upload service.
       {
         source: '/api/:path*',
-        headers: [
-          { key: 'content-security-policy', value: "default-src 'none'; frame-ancestors 'none'; sandbox" },
-        ],
+        headers: [{ key: 'content-security-policy', value: "default-src 'none'; frame-ancestors 'none'; sandbox" }],
       },
       {
         source: '/:path*',

@@ -198,7 +198,8 @@ describe('writing', () => {
         signedIn = true;
         return { status: 200, body: { secondFactor: false } };
       }
-      if (url === '/api/session') return { status: 200, body: { person, serverTime: new Date().toISOString(), demo: false } };
+      if (url === '/api/session')
+        return { status: 200, body: { person: tomas, serverTime: new Date().toISOString(), demo: false } };
       return ordinary(method, url, body);
     };
     write(simple('one'));

@@ -1,6 +1,6 @@
 import { expect, test, type Page } from '@playwright/test';
 import { demoPassword, mailOf, windowOf } from './people';
-import { attach, newEntry, saved, saveWords, text, textFile, traceOf, value, writeValue } from './sheet';
+import { attach, newEntry, saved, saveWords, text, textFile, traceOf, writeValue } from './sheet';
 
 /** Wrong files, wrong lines, lost sessions and lost windows: each is said in a sentence, and nothing typed is lost. */
 

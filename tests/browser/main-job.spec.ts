@@ -6,7 +6,6 @@ import { demoPassword, mailOf, mailTo, signIn, watch, windowOf } from './people'
 import {
   attach,
   below,
-  newEntry,
   readResult,
   saved,
   saveWords,
