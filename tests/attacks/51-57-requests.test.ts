@@ -204,7 +204,6 @@ describe('what is written about trouble', () => {
     expect(lines).toHaveLength(1);
     expect(lines[0].endsWith('}\n')).toBe(true);
     const body = lines[0].slice(0, -1);
-    // eslint-disable-next-line no-control-regex -- control characters are what is looked for
     expect(body).not.toMatch(/[\u0000-\u001f\u007f-\u009f\u2028\u2029]/);
     expect((JSON.parse(body) as { event: string }).event).toBe('failed\r\n{"event":"forged"}');
   });

@@ -151,9 +151,9 @@ beforeAll(async () => {
     if (!file.endsWith('route.ts')) continue;
     const folder = path.dirname(file);
     if (ownGuard.includes(folder)) continue;
-    const module = (await import(path.resolve('app/api', file))) as Record<string, Handler>;
+    const handlers = (await import(path.resolve('app/api', file))) as Record<string, Handler>;
     for (const method of ['GET', 'HEAD', 'POST', 'PUT', 'PATCH', 'DELETE'])
-      if (module[method]) routes.set(`${method} ${folder}`, module[method]);
+      if (handlers[method]) routes.set(`${method} ${folder}`, handlers[method]);
   }
   await buildWorkers();
   lab = await startLaboratory();
