@@ -1,6 +1,6 @@
 'use client';
 
-import { useEffect, useRef, useState } from 'react';
+import { useEffect, useRef, useState, useSyncExternalStore } from 'react';
 import type { DraftFace } from '@/components/hooks/use-draft';
 
 const clock = (iso: string) =>
@@ -25,12 +25,20 @@ export function savedWords({ status, keeps }: Pick<DraftFace, 'status' | 'keeps'
   }
 }
 
+const never = () => () => undefined;
+
 type Props = { draft: DraftFace; onCompare: () => void; onRenew: () => void };
 
 /** The quiet line about saving, with the one thing to do where there is one. */
 export function SaveLine({ draft, onCompare, onRenew }: Props) {
   const { status, keeps, outdated, restored, versionProblem } = draft;
-  const words = savedWords(draft);
+  // The server does not know the reader's zone: it leaves the time out, and the browser puts it in.
+  const inBrowser = useSyncExternalStore(
+    never,
+    () => true,
+    () => false,
+  );
+  const words = status.kind === 'saved' && !inBrowser ? 'saved' : savedWords(draft);
   const announced = useAnnouncement(
     status.kind === 'kept' ? `kept ${status.why === 'unreachable'}` : status.kind,
     words,
