@@ -1,7 +1,9 @@
 import 'server-only';
+import { askWitnesses, countersignObstacle } from './witness-service';
+import { headVersion, record, shownDigest, toSignatureDto, type Purpose } from './statements';
 import { now } from '@/server/clock/service';
 import { randomUUID } from 'node:crypto';
-import { and, asc, eq, inArray, isNull } from 'drizzle-orm';
+import { and, asc, eq, isNull } from 'drizzle-orm';
 import { readRecord } from '@/lib/document/version';
 import { AppError } from '@/lib/errors/app-error';
 import type { BindingDto, ChallengeDto, SignInput } from '@/lib/schemas/signing';
@@ -11,12 +13,10 @@ import { takeTurn } from '@/server/access/rate';
 import type { ScopeOf } from '@/server/access/scope';
 import { verifyOwnPassword } from '@/server/accounts/service';
 import { getDb, type DbOrTx, type Tx } from '@/server/db/client';
-import { entry, entryContributor, entryDraft, entryVersion, trace } from '@/server/db/schema/entries';
+import { entry, entryDraft, trace } from '@/server/db/schema/entries';
 import { notebookMember } from '@/server/db/schema/notebooks';
-import { challenge, question, signature, traceServed, witnessRequest } from '@/server/db/schema/signing';
-import { sealRecord } from '@/server/digest/service';
-import { env, secrets } from '@/server/env/env';
-import { appendLog } from '@/server/log/service';
+import { challenge, signature, witnessRequest } from '@/server/db/schema/signing';
+import { env } from '@/server/env/env';
 import { queueMail } from '@/server/mail/service';
 import { addressesOf } from '@/server/people/service';
 import { questionsOf } from '@/server/questions/service';
@@ -26,16 +26,6 @@ import { daysSince, meanings } from './meaning';
 const challengeMinutes = 10;
 
 type Signable = ScopeOf<'entry.sign'> | ScopeOf<'entry.countersign'>;
-type Purpose = 'sign' | 'countersign';
-
-async function headVersion(db: DbOrTx, entryId: string, headSeq: number) {
-  const [row] = await db
-    .select()
-    .from(entryVersion)
-    .where(and(eq(entryVersion.entryId, entryId), eq(entryVersion.seq, headSeq)));
-  if (!row) throw new AppError('invalid', 'This entry has no version yet. Cut one first (Ctrl+S in the text).');
-  return row;
-}
 
 /** Exactly what a signature would bind now. */
 export async function readBinding(scope: Signable, purpose: Purpose): Promise<BindingDto> {
@@ -70,19 +60,6 @@ export async function readBinding(scope: Signable, purpose: Purpose): Promise<Bi
     draftIsNewer: purpose === 'sign' && draft.revision !== draft.cutRevision,
     revision: draft.revision,
   };
-}
-
-/** Digest of what stands on the page beside the version: the questions with their answers. */
-async function shownDigest(db: DbOrTx, entryId: string, purpose: Purpose, readerId: string): Promise<string> {
-  const questions = purpose === 'countersign' ? await questionsOf(db, entryId, readerId) : [];
-  return sealRecord(
-    questions.map((q) => ({
-      id: q.id,
-      text: q.text,
-      state: q.state,
-      answers: q.answers.map((a) => ({ id: a.id, text: a.text })),
-    })),
-  ).digest;
 }
 
 /**
@@ -268,205 +245,9 @@ export async function countersignVerified(
   });
 }
 
-type Recording = {
-  about: typeof entry.$inferSelect;
-  person: Person;
-  notebook: string;
-  kind: 'author' | 'witness';
-  version: typeof entryVersion.$inferSelect;
-  now: Date;
-  input: Omit<SignInput, 'password'>;
-  late: { days: number; limit: number; reason: string | null } | null;
-};
-
-async function record(tx: Tx, r: Recording): Promise<SignatureDto> {
-  const authors =
-    r.kind === 'witness'
-      ? await tx
-          .select()
-          .from(signature)
-          .where(and(eq(signature.versionDigest, r.version.digest), eq(signature.kind, 'author')))
-      : [];
-  const statement = sealRecord({
-    format: 'kelvinleaf-statement',
-    number: 1,
-    kind: r.kind === 'author' ? 'signature' : 'countersignature',
-    attestation: 'attested by the server',
-    installation: secrets().installation,
-    notebook: r.notebook,
-    leaf: r.about.leaf,
-    entry: r.about.id,
-    versionDigest: r.version.digest,
-    signer: { id: r.person.id, printedName: r.person.name },
-    meaning: meanings[r.kind],
-    time: r.now.toISOString(),
-    zone: r.input.zone,
-    late: r.late,
-    authorStatementDigest: authors[0]?.statementDigest ?? null,
-    questionsDigest: r.kind === 'witness' ? await shownDigest(tx, r.about.id, 'countersign', r.person.id) : null,
-  });
-  const row = {
-    id: randomUUID(),
-    entryId: r.about.id,
-    kind: r.kind,
-    versionDigest: r.version.digest,
-    signerId: r.person.id,
-    printedName: r.person.name,
-    meaning: meanings[r.kind],
-    signedAt: r.now,
-    zone: r.input.zone,
-    lateReason: r.late?.reason ?? null,
-    statement: statement.canonical,
-    statementDigest: statement.digest,
-    attestation: 'server' as const,
-  };
-  await tx.insert(signature).values(row);
-  await appendLog(tx, {
-    kind: r.kind === 'author' ? 'signature' : 'countersignature',
-    actorId: r.person.id,
-    notebookId: r.about.notebookId,
-    entryId: r.about.id,
-    detail: { versionDigest: r.version.digest, statementDigest: statement.digest },
-  });
-  return toSignatureDto(row);
-}
-
-function toSignatureDto(row: typeof signature.$inferSelect): SignatureDto {
-  return {
-    id: row.id,
-    kind: row.kind,
-    printedName: row.printedName,
-    meaning: row.meaning,
-    signedAt: row.signedAt.toISOString(),
-    zone: row.zone,
-    versionDigest: row.versionDigest,
-    attestation: row.attestation,
-    lateReason: row.lateReason,
-    statement: new TextDecoder().decode(row.statement),
-  };
-}
-
 export async function signaturesOf(db: DbOrTx, entryId: string): Promise<SignatureDto[]> {
   const rows = await db.select().from(signature).where(eq(signature.entryId, entryId)).orderBy(asc(signature.signedAt));
   return rows.map(toSignatureDto);
-}
-
-async function askWitnesses(
-  tx: Tx,
-  on: { about: typeof entry.$inferSelect; person: Person; code: string },
-  ids: string[],
-): Promise<void> {
-  const { about, person, code } = on;
-  if (ids.length === 0) return;
-  const members = await tx
-    .select({ id: notebookMember.userId })
-    .from(notebookMember)
-    .where(
-      and(
-        eq(notebookMember.notebookId, about.notebookId),
-        inArray(notebookMember.userId, ids),
-        inArray(notebookMember.role, ['lead', 'author', 'witness']),
-      ),
-    );
-  const wrote = await tx
-    .select({ id: entryContributor.userId })
-    .from(entryContributor)
-    .where(eq(entryContributor.entryId, about.id));
-  const barred = new Set([about.authorId, ...wrote.map((c) => c.id)]);
-  for (const id of new Set(ids)) {
-    if (barred.has(id) || !members.some((member) => member.id === id)) {
-      throw new AppError(
-        'invalid',
-        'A witness must be a lead, author or witness of this notebook who took no part in the entry. Nothing was signed; choose another.',
-        { field: 'witnessIds' },
-      );
-    }
-    await tx
-      .insert(witnessRequest)
-      .values({ id: randomUUID(), entryId: about.id, witnessId: id, requestedBy: person.id })
-      .onConflictDoNothing();
-    const to = (await addressesOf(tx, [id])).get(id);
-    if (to) {
-      await queueMail(tx, {
-        to,
-        subject: `Please countersign ${code} leaf ${about.leaf}`,
-        lines: [
-          `${person.name} has signed “${about.title}” and asks you to countersign it.`,
-          `Read it here: ${env().baseUrl}/entries/${about.id}`,
-        ],
-      });
-    }
-  }
-  await appendLog(tx, {
-    kind: 'witness asked',
-    actorId: person.id,
-    notebookId: about.notebookId,
-    entryId: about.id,
-    detail: { witnesses: ids },
-  });
-}
-
-/** The author asks further colleagues after signing. */
-export async function requestWitnesses(scope: ScopeOf<'entry.requestWitness'>, ids: string[]): Promise<void> {
-  const db = await getDb();
-  await db.transaction((tx) =>
-    askWitnesses(tx, { about: scope.entry, person: scope.person, code: scope.notebook.code }, ids),
-  );
-}
-
-/** How many of the head version's traces this person has been served. */
-export async function tracesSeen(
-  db: DbOrTx,
-  about: typeof entry.$inferSelect,
-  personId: string,
-): Promise<{ traces: number; of: number }> {
-  if (about.headSeq === 0) return { traces: 0, of: 0 };
-  const version = await headVersion(db, about.id, about.headSeq);
-  const wanted = new Set(readRecord(version.canonical).traces.map((t) => t.traceId));
-  const served = await db
-    .select({ id: traceServed.traceId })
-    .from(traceServed)
-    .where(and(eq(traceServed.versionDigest, version.digest), eq(traceServed.userId, personId)));
-  return { traces: served.filter((row) => wanted.has(row.id)).length, of: wanted.size };
-}
-
-/** Why this person cannot countersign now, as a sentence; null when nothing stands in the way. Rights are decided elsewhere. */
-export async function countersignObstacle(
-  db: DbOrTx,
-  about: typeof entry.$inferSelect,
-  personId: string,
-): Promise<string | null> {
-  const open = await db
-    .select({ id: question.id })
-    .from(question)
-    .where(and(eq(question.entryId, about.id), eq(question.state, 'open')));
-  if (open.length > 0) {
-    return open.length === 1
-      ? 'One question is open: countersigning waits for its answer.'
-      : `${open.length} questions are open: countersigning waits for their answers.`;
-  }
-  const seen = await tracesSeen(db, about, personId);
-  if (seen.traces < seen.of)
-    return `You have seen ${seen.traces} of ${seen.of} traces of this version: open the others first.`;
-  return null;
-}
-
-/** Notes that a trace of the entry's newest version was served to a reader. */
-export async function noteServed(personId: string, about: typeof entry.$inferSelect, traceId: string): Promise<void> {
-  if (about.state !== 'signed' || about.authorId === personId) return;
-  const db = await getDb();
-  const [version] = await db
-    .select({ digest: entryVersion.digest })
-    .from(entryVersion)
-    .where(and(eq(entryVersion.entryId, about.id), eq(entryVersion.seq, about.headSeq)));
-  await db
-    .insert(traceServed)
-    .values({ versionDigest: version.digest, traceId, userId: personId, servedAt: now() })
-    .onConflictDoNothing();
-}
-
-export async function readObstacle(scope: ScopeOf<'entry.countersign'>): Promise<string | null> {
-  return countersignObstacle(await getDb(), scope.entry, scope.person.id);
 }
 
 /** Revision of the draft that a version would be cut from. */

@@ -30,7 +30,7 @@ const planted: { name: string; file: string; code: string; rule: string }[] = [
   {
     name: 'a component uses the server',
     file: 'components/ui/planted.tsx',
-    code: "import { readEntry } from '@/server/entries/service';\nexport const x = readEntry;\n",
+    code: "import { createEntry } from '@/server/entries/service';\nexport const x = createEntry;\n",
     rule: 'boundaries/dependencies',
   },
   {
@@ -54,7 +54,7 @@ const planted: { name: string; file: string; code: string; rule: string }[] = [
   {
     name: 'the database layer uses a noun',
     file: 'server/db/planted.ts',
-    code: "import { readEntry } from '@/server/entries/service';\nexport const x = readEntry;\n",
+    code: "import { createEntry } from '@/server/entries/service';\nexport const x = createEntry;\n",
     rule: 'boundaries/dependencies',
   },
   {
@@ -94,7 +94,7 @@ describe('import rules', () => {
     expect(
       await refusals(
         'server/devices/planted.ts',
-        "import { readEntry } from '@/server/entries/service';\nexport const x = readEntry;\n",
+        "import { createEntry } from '@/server/entries/service';\nexport const x = createEntry;\n",
       ),
     ).toEqual([]);
     expect(await refusals('lib/units/planted.ts', "import { z } from 'zod';\nexport const x = z;\n")).toEqual([]);

@@ -7,7 +7,7 @@ import { Facts } from '@/components/ui/facts';
 import { pageAccess } from '@/server/access/page';
 import { readCooldown } from '@/server/cooldowns/service';
 import { listDevices } from '@/server/devices/service';
-import { listEntries } from '@/server/entries/service';
+import { listEntries } from '@/server/entries/reading-service';
 
 export const metadata: Metadata = { title: 'Cooldown' };
 

@@ -6,7 +6,7 @@ import { EntryTable } from '@/components/entry/entry-table';
 import { Facts } from '@/components/ui/facts';
 import { pageAccess } from '@/server/access/page';
 import { readDevice } from '@/server/devices/service';
-import { listEntries } from '@/server/entries/service';
+import { listEntries } from '@/server/entries/reading-service';
 
 export const metadata: Metadata = { title: 'Device' };
 

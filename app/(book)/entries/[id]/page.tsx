@@ -5,7 +5,7 @@ import { ReadingText } from '@/components/reading/reading-text';
 import { typesetAll } from '@/lib/document/typeset-all';
 import { pageAccess } from '@/server/access/page';
 import { readDraft } from '@/server/entries/draft-service';
-import { entryChoices, readEntry } from '@/server/entries/service';
+import { entryChoices, readEntry } from '@/server/entries/reading-service';
 import { readVersion } from '@/server/entries/version-service';
 import { env } from '@/server/env/env';
 import { toPersonDto } from '@/server/people/service';

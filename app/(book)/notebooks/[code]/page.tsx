@@ -3,7 +3,7 @@ import Link from 'next/link';
 import { Suspense } from 'react';
 import { EntryTable } from '@/components/entry/entry-table';
 import { pageAccess } from '@/server/access/page';
-import { listEntries } from '@/server/entries/service';
+import { listEntries } from '@/server/entries/reading-service';
 
 type Params = { params: Promise<{ code: string }> };
 

@@ -4,7 +4,8 @@ import { Binding } from '@/components/entry/binding';
 import { SigningForm } from '@/components/entry/signing-form';
 import { AttentionSentence } from '@/components/ui/sentence';
 import { pageAccess } from '@/server/access/page';
-import { readBinding, readObstacle } from '@/server/signing/service';
+import { readBinding } from '@/server/signing/service';
+import { readObstacle } from '@/server/signing/witness-service';
 
 export const metadata: Metadata = { title: 'Countersign' };
 

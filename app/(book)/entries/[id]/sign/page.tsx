@@ -5,7 +5,7 @@ import { CutVersion } from '@/components/entry/cut-version';
 import { SigningForm } from '@/components/entry/signing-form';
 import { AttentionSentence } from '@/components/ui/sentence';
 import { pageAccess } from '@/server/access/page';
-import { possibleWitnesses } from '@/server/entries/service';
+import { possibleWitnesses } from '@/server/entries/reading-service';
 import { readBinding, readRevision } from '@/server/signing/service';
 
 export const metadata: Metadata = { title: 'Sign' };

@@ -1,6 +1,6 @@
 import { attachmentHeader } from '@/lib/trace-format/file-name';
 import { withAccess } from '@/server/access/route';
-import { noteServed } from '@/server/signing/service';
+import { noteServed } from '@/server/signing/witness-service';
 import { storedFile } from '@/server/traces/service';
 
 /** The bytes as they were received: always a download, never a page of this origin, whatever the file says it is. */

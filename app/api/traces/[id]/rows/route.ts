@@ -1,6 +1,6 @@
 import { z } from 'zod';
 import { withAccess } from '@/server/access/route';
-import { noteServed } from '@/server/signing/service';
+import { noteServed } from '@/server/signing/witness-service';
 import { parsedDigest, readRows } from '@/server/traces/service';
 
 const query = z.object({

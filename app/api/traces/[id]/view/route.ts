@@ -1,7 +1,7 @@
 import { z } from 'zod';
 import { encodeView } from '@/lib/plot/view';
 import { withAccess } from '@/server/access/route';
-import { noteServed } from '@/server/signing/service';
+import { noteServed } from '@/server/signing/witness-service';
 import { parsedDigest, readView } from '@/server/traces/service';
 import { binary } from '../binary';
 

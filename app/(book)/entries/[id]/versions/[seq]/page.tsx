@@ -4,7 +4,7 @@ import { EntrySheet } from '@/components/entry/entry-sheet';
 import { ReadingText } from '@/components/reading/reading-text';
 import { AttentionSentence } from '@/components/ui/sentence';
 import { pageAccess } from '@/server/access/page';
-import { readEntry } from '@/server/entries/service';
+import { readEntry } from '@/server/entries/reading-service';
 import { readVersion } from '@/server/entries/version-service';
 import { env } from '@/server/env/env';
 import { toPersonDto } from '@/server/people/service';

@@ -1,5 +1,5 @@
 import { withAccess } from '@/server/access/route';
-import { noteServed } from '@/server/signing/service';
+import { noteServed } from '@/server/signing/witness-service';
 import { parsedDigest, readColumn } from '@/server/traces/service';
 import { binary } from '../../binary';
 
