@@ -1,5 +1,4 @@
 import 'server-only';
-import { now } from '@/server/clock/service';
 import { and, desc, eq, inArray, sql } from 'drizzle-orm';
 import { type EntryDto, type EntryState, type PersonDto, type TraceDto } from '@/lib/schemas/entry';
 import { allows } from '@/server/access/rights';

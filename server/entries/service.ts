@@ -11,7 +11,7 @@ import { titleSchema, workDateSchema } from '@/lib/schemas/entry';
 import type { ScopeOf } from '@/server/access/scope';
 import { getDb, type DbOrTx, type Tx } from '@/server/db/client';
 import { entry, entryContributor, entryDevice, entryDraft } from '@/server/db/schema/entries';
-import { notebook, notebookMember } from '@/server/db/schema/notebooks';
+import { notebookMember } from '@/server/db/schema/notebooks';
 import { layoutDocument } from '@/server/layouts/service';
 import { appendLog } from '@/server/log/service';
 import * as queries from './queries';

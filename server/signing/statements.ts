@@ -1,5 +1,4 @@
 import 'server-only';
-import { now } from '@/server/clock/service';
 import { randomUUID } from 'node:crypto';
 import { and, eq } from 'drizzle-orm';
 import { AppError } from '@/lib/errors/app-error';
