@@ -51,8 +51,8 @@ test.beforeAll(async ({ browser }) => {
   const context = await browser.newContext({ viewport: { width: 1280, height: 900 } });
   windows.push(context);
   page = await context.newPage();
-  // A network that drops is part of this job; the browser writes what it could not fetch to its console.
-  errors = watch(page, /ERR_INTERNET_DISCONNECTED|ERR_FAILED|status of 409/);
+  // A network that drops, a conflict and a wrong password are part of this job; the browser writes each to its console.
+  errors = watch(page, /ERR_INTERNET_DISCONNECTED|ERR_FAILED|status of (409|422)/);
 });
 
 test.afterAll(async () => {
