@@ -19,6 +19,10 @@ CREATE TRIGGER log_record_kept BEFORE TRUNCATE ON log_record FOR EACH STATEMENT 
 --> statement-breakpoint
 CREATE TRIGGER answer_fixed BEFORE UPDATE OR DELETE ON answer FOR EACH ROW EXECUTE FUNCTION refuse_change();
 --> statement-breakpoint
+CREATE TRIGGER answer_kept BEFORE TRUNCATE ON answer FOR EACH STATEMENT EXECUTE FUNCTION refuse_change();
+--> statement-breakpoint
+CREATE TRIGGER question_kept BEFORE DELETE ON question FOR EACH ROW EXECUTE FUNCTION refuse_change();
+--> statement-breakpoint
 CREATE FUNCTION keep_leaf() RETURNS trigger LANGUAGE plpgsql AS $$
 BEGIN
   IF TG_OP <> 'UPDATE' THEN

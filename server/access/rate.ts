@@ -1,6 +1,6 @@
 import 'server-only';
 import { createHash } from 'node:crypto';
-import { lt, sql } from 'drizzle-orm';
+import { eq, lt, sql } from 'drizzle-orm';
 import { AppError } from '@/lib/errors/app-error';
 import { getDb } from '@/server/db/client';
 import { rateCount } from '@/server/db/schema/housekeeping';
@@ -21,13 +21,14 @@ export async function takeTurn(key: string, limit: number, seconds: number): Pro
   }
 }
 
+const hashKey = (key: string): string => createHash('sha256').update(key).digest('hex');
+
 async function countTurn(key: string, seconds: number): Promise<number> {
   const db = await getDb();
-  const hashed = createHash('sha256').update(key).digest('hex');
   const oldest = new Date(Date.now() - seconds * 1000);
   const [row] = await db
     .insert(rateCount)
-    .values({ key: hashed, windowStart: new Date(), count: 1 })
+    .values({ key: hashKey(key), windowStart: new Date(), count: 1 })
     .onConflictDoUpdate({
       target: rateCount.key,
       set: {
@@ -37,6 +38,11 @@ async function countTurn(key: string, seconds: number): Promise<number> {
     })
     .returning({ count: rateCount.count });
   return row.count;
+}
+
+/** After a success: the tries before it were a person's own slips, and the next ten are free again. */
+export async function forgiveTurns(key: string): Promise<void> {
+  await (await getDb()).delete(rateCount).where(eq(rateCount.key, hashKey(key)));
 }
 
 export async function forgetOldTurns(): Promise<void> {

@@ -4,7 +4,7 @@ import { and, asc, desc, eq, gt, isNull, ne } from 'drizzle-orm';
 import { AppError } from '@/lib/errors/app-error';
 import { initialsOf, type InstallationRole } from '@/lib/schemas/person';
 import { hashToken, type Person } from '@/server/access/person';
-import { takeTurn } from '@/server/access/rate';
+import { forgiveTurns, takeTurn } from '@/server/access/rate';
 import { checkPassword, hashPassword } from '@/server/auth/password';
 import { getDb, type DbOrTx, type Tx } from '@/server/db/client';
 import { account, invitation, session, token, user } from '@/server/db/schema/people';
@@ -27,7 +27,10 @@ export async function verifyOwnPassword(person: Person, password: string, purpos
     .select({ hash: account.password })
     .from(account)
     .where(and(eq(account.userId, person.id), eq(account.providerId, 'credential')));
-  if (row?.hash && (await checkPassword({ hash: row.hash, password }))) return;
+  if (row?.hash && (await checkPassword({ hash: row.hash, password }))) {
+    await forgiveTurns(`password:${person.id}`);
+    return;
+  }
   await noteSecurity('wrong password', `${purpose} by ${person.id}`, '');
   throw new AppError('invalid', 'The password is not right. Nothing was done; try again.', { field: 'password' });
 }
