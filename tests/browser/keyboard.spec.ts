@@ -50,6 +50,7 @@ test('an author signs in, begins an entry, writes, and signs', async ({ browser 
   await tabTo(page, acknowledge);
   await page.keyboard.press('Enter');
   await expect(page.getByText('Read and acknowledged')).toContainText('Tomas Reinholt');
+  await saved(page);
 
   // The cursor goes to the end; what is written there stands below "What next".
   await page.goto(address);

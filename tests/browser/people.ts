@@ -50,7 +50,7 @@ export function watch(page: Page, expected: RegExp | null = null): string[] {
     if (!expected?.test(line)) said.push(line);
   };
   page.on('console', (message) => {
-    if (message.type() === 'error') note(message.text());
+    if (message.type() === 'error') note(`${message.text()} ${message.location().url}`);
   });
   page.on('pageerror', (error) => note(String(error)));
   return said;
