@@ -53,7 +53,7 @@ function attachAll(host: EditorHost, list: FileList | null | undefined, position
 
 /** Paste and drop: cells of a spreadsheet as a table, images as pictures, files as traces, an address over text as a link. */
 export const paste = Extension.create<{ host: EditorHost }>({
-  name: 'paste',
+  name: 'sheetPaste',
   priority: 1100,
   addProseMirrorPlugins() {
     const { host } = this.options;
