@@ -45,7 +45,7 @@ export function Binding({ binding }: { binding: BindingDto }) {
         {binding.values.length === 0 ? (
           <p className="text-quiet">None.</p>
         ) : (
-          <div className="overflow-x-auto" tabIndex={0} role="region" aria-label="Values bound">
+          <div className="relative overflow-x-auto" tabIndex={0} role="region" aria-label="Values bound">
             <table className="table-plain">
               <thead>
                 <tr>

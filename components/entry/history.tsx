@@ -42,62 +42,64 @@ export function History({ entryId, versions, mayRestore }: Props) {
   };
   return (
     <div className="history">
-      <table className="table-plain">
-        <caption className="sr-only">Versions</caption>
-        <thead>
-          <tr>
-            <th scope="col">version</th>
-            <th scope="col">cut</th>
-            <th scope="col">by</th>
-            <th scope="col">digest</th>
-            <th scope="col">reason</th>
-            <th scope="col">compare</th>
-            {mayRestore ? <th scope="col">restore</th> : null}
-          </tr>
-        </thead>
-        <tbody>
-          {ordered.map((version) => (
-            <tr key={version.id}>
-              <th scope="row">{version.seq}</th>
-              <td>
-                <time dateTime={version.createdAt}>{moment(version.createdAt)}</time>
-              </td>
-              <td>{version.createdBy.name}</td>
-              <td className="figures" title={version.digest}>
-                {version.digest.slice(0, 12)}
-              </td>
-              <td>{version.reason ?? ''}</td>
-              <td className="history-pick">
-                <label>
-                  <input
-                    type="radio"
-                    name="from"
-                    checked={from === version.seq}
-                    onChange={() => setFrom(version.seq)}
-                  />{' '}
-                  from
-                </label>
-                <label>
-                  <input type="radio" name="to" checked={to === version.seq} onChange={() => setTo(version.seq)} /> to
-                </label>
-              </td>
-              {mayRestore ? (
-                <td>
-                  <button
-                    type="button"
-                    className="small-press"
-                    disabled={restoring !== null}
-                    title="The draft takes this version’s text; every version stays"
-                    onClick={() => void restore(version)}
-                  >
-                    {restoring === version.seq ? 'Restoring' : 'Restore'}
-                  </button>
-                </td>
-              ) : null}
+      <div className="relative overflow-x-auto" tabIndex={0} role="region" aria-label="Versions">
+        <table className="table-plain">
+          <caption className="sr-only">Versions</caption>
+          <thead>
+            <tr>
+              <th scope="col">version</th>
+              <th scope="col">cut</th>
+              <th scope="col">by</th>
+              <th scope="col">digest</th>
+              <th scope="col">reason</th>
+              <th scope="col">compare</th>
+              {mayRestore ? <th scope="col">restore</th> : null}
             </tr>
-          ))}
-        </tbody>
-      </table>
+          </thead>
+          <tbody>
+            {ordered.map((version) => (
+              <tr key={version.id}>
+                <th scope="row">{version.seq}</th>
+                <td>
+                  <time dateTime={version.createdAt}>{moment(version.createdAt)}</time>
+                </td>
+                <td>{version.createdBy.name}</td>
+                <td className="figures" title={version.digest}>
+                  {version.digest.slice(0, 12)}
+                </td>
+                <td>{version.reason ?? ''}</td>
+                <td className="history-pick">
+                  <label>
+                    <input
+                      type="radio"
+                      name="from"
+                      checked={from === version.seq}
+                      onChange={() => setFrom(version.seq)}
+                    />{' '}
+                    from
+                  </label>
+                  <label>
+                    <input type="radio" name="to" checked={to === version.seq} onChange={() => setTo(version.seq)} /> to
+                  </label>
+                </td>
+                {mayRestore ? (
+                  <td>
+                    <button
+                      type="button"
+                      className="small-press"
+                      disabled={restoring !== null}
+                      title="The draft takes this version’s text; every version stays"
+                      onClick={() => void restore(version)}
+                    >
+                      {restoring === version.seq ? 'Restoring' : 'Restore'}
+                    </button>
+                  </td>
+                ) : null}
+              </tr>
+            ))}
+          </tbody>
+        </table>
+      </div>
       <ErrorSentence>{problem}</ErrorSentence>
       {from !== null && to !== null && from !== to ? (
         <DifferenceView entryId={entryId} from={from} to={to} />

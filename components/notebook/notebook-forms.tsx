@@ -89,7 +89,7 @@ export function Members({ code, members, mayChange }: { code: string; members: M
       <p role="status" className="sr-only">
         {said}
       </p>
-      <div className="overflow-x-auto" tabIndex={0} role="region" aria-label="Members">
+      <div className="relative overflow-x-auto" tabIndex={0} role="region" aria-label="Members">
         <table className="table-plain">
           <thead>
             <tr>

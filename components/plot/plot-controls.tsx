@@ -70,7 +70,7 @@ export function PlotControls({ columns, view, onView, mode, onMode, mayNameSpans
         </fieldset>
       </details>
       {(['logX', 'logY'] as const).map((axis) => (
-        <label key={axis} className="flex min-h-6 items-center gap-1">
+        <label key={axis} className="flex min-h-[24px] items-center gap-1">
           <input
             type="checkbox"
             checked={view[axis]}
@@ -82,7 +82,7 @@ export function PlotControls({ columns, view, onView, mode, onMode, mayNameSpans
       <fieldset className="flex flex-wrap items-center gap-x-3">
         <legend className="sr-only">What dragging over the plot does</legend>
         {offered.map((item) => (
-          <label key={item.mode} className="flex min-h-6 items-center gap-1">
+          <label key={item.mode} className="flex min-h-[24px] items-center gap-1">
             <input type="radio" name={group} checked={mode === item.mode} onChange={() => onMode(item.mode)} />
             {item.label}
           </label>

@@ -108,7 +108,7 @@ export function SpanEditor({ spans, axis, unit, proposed, onSpans, onDone }: Pro
                 </span>
                 <button
                   type="button"
-                  className="min-h-6 cursor-pointer px-1 text-action underline"
+                  className="min-h-[24px] cursor-pointer px-1 text-action underline"
                   onClick={() =>
                     onSpans(
                       spans

@@ -191,7 +191,7 @@ export function TracePlot({
           <p className="p-4 text-quiet">{data.loading ? 'The samples are being fetched.' : nothing(shownY, view)}</p>
         )}
       </div>
-      <p aria-live="polite" className="figures min-h-6 text-sm">
+      <p aria-live="polite" className="figures min-h-[24px] text-sm">
         {readout}
       </p>
       {step > 1 ? (
@@ -201,7 +201,7 @@ export function TracePlot({
       ) : null}
       <ErrorSentence>{data.problem ?? saveProblem ?? tableProblem}</ErrorSentence>
       <details className="plot-tools" open={toolsOpen || undefined}>
-        <summary className="min-h-6 cursor-pointer text-sm text-action">Plot tools</summary>
+        <summary className="min-h-[24px] cursor-pointer text-sm text-action">Plot tools</summary>
         <div className="my-2 space-y-2">
           <PlotControls
             columns={provider.columns}

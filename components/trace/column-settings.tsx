@@ -41,7 +41,7 @@ export function ColumnSettings({ index, column, problems, onChange }: Props) {
           />
         </div>
         <details className="mt-1" open={scaled || undefined}>
-          <summary className="min-h-6 cursor-pointer text-sm text-action">
+          <summary className="min-h-[24px] cursor-pointer text-sm text-action">
             Gain and offset{scaled ? '' : ' (none: the file is in the quantity itself)'}
           </summary>
           <p className="text-sm text-quiet">quantity = (number in the file × unit − offset) / gain</p>

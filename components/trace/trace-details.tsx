@@ -13,7 +13,7 @@ type Props = {
 export function TraceDetails({ handle, open, unfold, children }: Props) {
   return (
     <details className="my-2" open={unfold || undefined}>
-      <summary className="min-h-6 cursor-pointer text-action">
+      <summary className="min-h-[24px] cursor-pointer text-action">
         Units, gains and scan of {handle}
         {open > 0 ? (
           <span className="text-error">

@@ -126,7 +126,7 @@ export function TraceSettingsForm({ settings, onChange, problems }: Props) {
           {asks?.sweep ? sweep : null}
         </div>
         <details>
-          <summary className="min-h-6 cursor-pointer text-action">
+          <summary className="min-h-[24px] cursor-pointer text-action">
             {asks ? 'Everything else about drive and instrument' : 'Drive and instrument'}
           </summary>
           <div className="mt-2 grid gap-3 sm:grid-cols-2">

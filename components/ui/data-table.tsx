@@ -176,7 +176,7 @@ function Body<Row>({ caption, columns, rows, rowKey, state, onState }: BodyProps
       tabIndex={0}
       role="region"
       aria-label={caption}
-      className={`overflow-auto ${long ? 'max-h-[70vh]' : ''}`}
+      className={`relative overflow-auto ${long ? 'max-h-[70vh]' : ''}`}
     >
       <table className="table-plain" aria-rowcount={rows.length + 1}>
         <caption className="sr-only">{caption}</caption>
@@ -193,7 +193,7 @@ function Body<Row>({ caption, columns, rows, rowKey, state, onState }: BodyProps
                 >
                   <button
                     type="button"
-                    className="min-h-6 cursor-pointer font-medium hover:text-action"
+                    className="min-h-[24px] cursor-pointer font-medium hover:text-action"
                     onClick={() =>
                       onState({ ...state, sort: column.key, descending: sorted ? !state.descending : false })
                     }

@@ -29,7 +29,7 @@ export function RowList<Row extends Record<string, string>>({
   return (
     <fieldset>
       <legend className="font-medium">{legend}</legend>
-      <div className="overflow-x-auto">
+      <div className="relative overflow-x-auto">
         {rows.map((row, index) => (
           <div
             key={keys[index] ?? index}

@@ -70,7 +70,7 @@ export default async function CooldownPage({ params }: { params: Promise<{ id: s
         {cooldown.lines.length === 0 ? (
           <p className="text-quiet">No line is entered.</p>
         ) : (
-          <div className="overflow-x-auto" tabIndex={0} role="region" aria-label="Lines">
+          <div className="relative overflow-x-auto" tabIndex={0} role="region" aria-label="Lines">
             <table className="table-plain">
               <thead>
                 <tr>

@@ -55,7 +55,7 @@ export default async function DevicePage({ params }: { params: Promise<{ id: str
           {device.gates.length === 0 ? (
             <p className="text-quiet">No gate is entered.</p>
           ) : (
-            <div className="overflow-x-auto" tabIndex={0} role="region" aria-label="Gates">
+            <div className="relative overflow-x-auto" tabIndex={0} role="region" aria-label="Gates">
               <table className="table-plain">
                 <thead>
                   <tr>

@@ -34,7 +34,7 @@ export default async function TraceRoute({ params }: { params: Promise<{ id: str
         <p className="text-quiet">The file is still being read. Reload the page in a moment.</p>
       ) : null}
       {trace.state === 'parsed' ? <TracePage trace={trace} words={words} /> : null}
-      <div className="mt-8 grid gap-10 lg:grid-cols-2">
+      <div className="mt-8 grid grid-cols-1 gap-10 lg:grid-cols-2">
         <section>
           <h2 className="mb-2">Where it comes from</h2>
           <Facts
@@ -70,7 +70,7 @@ export default async function TraceRoute({ params }: { params: Promise<{ id: str
                 trace.comments.length === 0 ? (
                   ''
                 ) : (
-                  <pre key="c" className="overflow-x-auto text-sm" tabIndex={0}>
+                  <pre key="c" className="relative overflow-x-auto text-sm" tabIndex={0}>
                     {trace.comments.slice(0, 40).join('\n')}
                   </pre>
                 ),
@@ -110,7 +110,7 @@ export default async function TraceRoute({ params }: { params: Promise<{ id: str
             <p className="text-quiet">The trace is not placed in the text of its entry.</p>
           )}
           <h2 className="mb-2 mt-6">Columns</h2>
-          <div className="overflow-x-auto" tabIndex={0} role="region" aria-label="Columns">
+          <div className="relative overflow-x-auto" tabIndex={0} role="region" aria-label="Columns">
             <table className="table-plain">
               <thead>
                 <tr>

@@ -23,7 +23,10 @@ export default async function VersionPage({ params }: { params: Promise<{ id: st
   return (
     <>
       <AttentionSentence>
-        Version {number} of {scope.entry.headSeq}, as it was bound. <Link href={`/entries/${id}`}>To the newest</Link>
+        Version {number} of {scope.entry.headSeq}, as it was bound.{' '}
+        <Link href={`/entries/${id}`} className="underline">
+          To the newest
+        </Link>
       </AttentionSentence>
       <EntrySheet
         entry={entry}
