@@ -36,7 +36,10 @@ export function BookHeader({
         <Link href="/" className="flex items-center gap-2 font-semibold no-underline">
           <Mark /> Kelvinleaf
         </Link>
-        <nav aria-label="Main" className="order-3 -mx-1 flex w-full gap-x-1 relative overflow-x-auto lg:order-none lg:w-auto">
+        <nav
+          aria-label="Main"
+          className="order-3 -mx-1 flex w-full gap-x-1 relative overflow-x-auto lg:order-none lg:w-auto"
+        >
           {links.map((link) => (
             <Link
               key={link.href}
