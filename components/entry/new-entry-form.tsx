@@ -1,6 +1,6 @@
 'use client';
 
-import { useState } from 'react';
+import { useEffect, useState } from 'react';
 import { clockTime } from '@/lib/document/clock-time';
 import { ActionForm } from '@/components/ui/action-form';
 import { Choice, Field } from '@/components/ui/field';
@@ -16,6 +16,9 @@ type Props = {
 const localDate = () => new Intl.DateTimeFormat('en-CA', { dateStyle: 'short' }).format(new Date());
 
 export function NewEntryForm({ code, cooldowns, devices, layouts }: Props) {
+  // The writer's own day: the server's may be another around midnight.
+  const [workDate, setWorkDate] = useState('');
+  useEffect(() => setWorkDate(localDate()), []);
   // One key for this form, so that a second press after a lost answer makes no second leaf.
   const [requestKey] = useState(() => crypto.randomUUID());
   return (
@@ -40,8 +43,8 @@ export function NewEntryForm({ code, cooldowns, devices, layouts }: Props) {
         label="Date of the work"
         name="workDate"
         type="date"
-        defaultValue={localDate()}
-        suppressHydrationWarning
+        value={workDate}
+        onChange={(event) => setWorkDate(event.target.value)}
         required
       />
       <Choice

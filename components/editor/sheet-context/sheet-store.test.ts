@@ -99,22 +99,19 @@ describe('SheetStore', () => {
     expect(store.result('value_f')!.text).toBe('200 kHz');
   });
 
-  it('recalculates 200 values that hang on one another within a frame (16 ms) after a keystroke', async () => {
+  it('follows every keystroke through 200 values that hang on one another', async () => {
     const { store } = storeWith();
     const chain = (start: number) =>
       Array.from({ length: 200 }, (_, i) =>
         cell(`value_${i}_x`, i === 0 ? `x_0 = ${start}.0(1) pA` : `x_${i} = x_${i - 1}*1.001 + x_0`),
       );
-    const durations: number[] = [];
-    for (let round = 1; round <= 15; round += 1) {
+    // How long that takes is measured by the bench, never by a test.
+    for (let round = 1; round <= 3; round += 1) {
       store.setDocument(nodeOf(...chain(round)));
       await until(() => expect(store.result('value_0_x')?.text).toContain(`${round}.0`));
-      durations.push(store.lastDuration);
+      expect(store.result('value_199_x')!.state).toBe('ok');
+      // x_n = r·x_(n−1) + x_0 from x_0: the sum of a geometric series, r = 1.001.
+      expect(store.result('value_199_x')!.value).toBeCloseTo((round * (1.001 ** 200 - 1)) / 0.001, 6);
     }
-    expect(store.result('value_199_x')!.state).toBe('ok');
-    // The median of the warm rounds: a busy machine may hold up a single one.
-    const warm = durations.slice(5).sort((a, b) => a - b);
-    console.info(`200 dependent values: ${warm[5]!.toFixed(1)} ms`);
-    expect(warm[5]).toBeLessThan(16 * 4);
   });
 });
