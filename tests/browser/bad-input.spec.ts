@@ -150,12 +150,31 @@ test('a wrong password and spent or made-up links get a sentence, and the addres
   await context.close();
 });
 
+/** Everything that this browser keeps unsent, as text; runs in the page. */
+function keptTexts(): Promise<string> {
+  return new Promise((resolve, reject) => {
+    const opening = indexedDB.open('kelvinleaf-drafts');
+    opening.onerror = () => reject(opening.error);
+    opening.onsuccess = () => {
+      const table = opening.result.objectStoreNames[0];
+      const reading = opening.result.transaction(table).objectStore(table).getAll();
+      reading.onerror = () => reject(reading.error);
+      reading.onsuccess = () => {
+        opening.result.close();
+        resolve(JSON.stringify(reading.result));
+      };
+    };
+  });
+}
+
 test('fault 24: a window that crashed before sending gives its text back', async ({ browser }) => {
   const { context, page } = await windowOf(browser, 'tomas');
   const address = await freshSheet(page, 'A crash');
   await page.route('**/api/entries/*/draft', (route) => route.abort());
   await page.keyboard.type(' Never sent.');
   await expect(saveWords(page)).toContainText('kept in this browser, not yet on the server');
+  // What is typed is in the browser's own store within a tenth of a second; the crash comes after that, not within it.
+  await expect.poll(() => page.evaluate(keptTexts)).toContain('Never sent.');
   // The process of the window dies: nothing runs, nothing is sent, nothing says goodbye.
   const gone = page.waitForEvent('crash');
   const debug = await context.newCDPSession(page);
